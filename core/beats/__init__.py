@@ -1,0 +1,1 @@
+"""Beats: where they are, of what kind, and the one that stands for all."""

@@ -1,0 +1,104 @@
+"""Where the QRS complexes are, from all leads together."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.signal import find_peaks
+
+from core.conditioning.zero_phase import low_pass, moving_mean
+
+# The QRS is the only wave with much power here; P and T lie below, muscle noise above.
+SLOPE_SPAN_S = 0.016
+HIGHEST_HZ = 35.0
+ENVELOPE_S = 0.09
+SHORTEST_RR_S = 0.25  # 240 beats a minute
+WINDOW_S = 1.6  # holds at least one beat down to 38 a minute
+SMALLEST_SHARE = 0.30  # of the local QRS envelope
+# Within this time after a QRS, a wave must be this much of it, or it is its T wave.
+T_WAVE_S = 0.42
+T_WAVE_SHARE = 0.55
+
+
+def qrs_envelope(signal_mv: NDArray[np.float64], sampling_rate_hz: float) -> NDArray[np.float64]:
+    """Root mean square slope over the leads, smoothed over about one QRS.
+
+    Parameters
+    ----------
+    signal_mv : ndarray, shape (n_leads, n_samples)
+
+    Returns
+    -------
+    ndarray, shape (n_samples,)
+        In mV/s.
+    """
+    smooth = low_pass(signal_mv, cutoff_hz=HIGHEST_HZ, sampling_rate_hz=sampling_rate_hz)
+    span = max(1, round(SLOPE_SPAN_S * sampling_rate_hz / 2))
+    slope = np.zeros_like(smooth)
+    slope[:, span:-span] = (smooth[:, 2 * span :] - smooth[:, : -2 * span]) * (
+        sampling_rate_hz / (2 * span)
+    )
+    power = np.mean(slope**2, axis=0)
+    return np.asarray(
+        np.sqrt(np.maximum(moving_mean(power, round(ENVELOPE_S * sampling_rate_hz)), 0.0))
+    )
+
+
+def detect_beats(signal_mv: NDArray[np.float64], sampling_rate_hz: float) -> NDArray[np.int64]:
+    """Sample of the middle of each QRS.
+
+    Parameters
+    ----------
+    signal_mv : ndarray, shape (n_leads, n_samples)
+        The independent leads, no NaN; baseline wander does not matter.
+
+    Returns
+    -------
+    ndarray of int, shape (n_beats,)
+        Ascending; empty where nothing like a QRS is found.
+    """
+    n = signal_mv.shape[1]
+    if n < SHORTEST_RR_S * sampling_rate_hz:
+        return np.empty(0, dtype=np.int64)
+    envelope = qrs_envelope(signal_mv, sampling_rate_hz)
+    peaks, _ = find_peaks(envelope, distance=max(1, round(SHORTEST_RR_S * sampling_rate_hz)))
+    height = envelope[peaks]
+    local = _local_qrs_height(peaks, height, n, sampling_rate_hz)
+    keep = height >= SMALLEST_SHARE * local
+    peaks, height = peaks[keep], height[keep]
+    return _without_t_waves(peaks, height, sampling_rate_hz)
+
+
+def _local_qrs_height(
+    peaks: NDArray[np.int64], height: NDArray[np.float64], n: int, sampling_rate_hz: float
+) -> NDArray[np.float64]:
+    """Typical QRS height around each peak: median of the tallest of five windows near it.
+
+    The median passes over a window without a beat and over a lone artefact.
+    """
+    width = WINDOW_S * sampling_rate_hz
+    n_windows = max(1, round(n / width))
+    window = np.minimum((peaks * n_windows) // n, n_windows - 1)
+    tallest = np.zeros(n_windows)
+    np.maximum.at(tallest, window, height)
+    if n_windows == 1:
+        return np.full(peaks.size, tallest[0])
+    reach = min(2, (n_windows - 1) // 2)
+    padded = np.pad(tallest, reach, mode="reflect") if reach else tallest
+    around = np.lib.stride_tricks.sliding_window_view(padded, 2 * reach + 1)
+    typical = np.median(around, axis=1)
+    return np.asarray(typical[window])
+
+
+def _without_t_waves(
+    peaks: NDArray[np.int64], height: NDArray[np.float64], sampling_rate_hz: float
+) -> NDArray[np.int64]:
+    kept: list[int] = []
+    last_height = 0.0
+    for peak, tall in zip(peaks.tolist(), height.tolist(), strict=True):
+        near = bool(kept) and peak - kept[-1] < T_WAVE_S * sampling_rate_hz
+        if near and tall < T_WAVE_SHARE * last_height:
+            continue
+        kept.append(peak)
+        last_height = tall
+    return np.asarray(kept, dtype=np.int64)

@@ -1,0 +1,18 @@
+"""Numbers as JSON can hold them."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterable
+
+
+def number_or_none(value: float | None) -> float | None:
+    """A Python float, or None for NaN, infinity and None."""
+    if value is None or not math.isfinite(value):
+        return None
+    return float(value)
+
+
+def numbers_or_none(values: Iterable[float]) -> list[float | None]:
+    """Each value as `number_or_none` gives it."""
+    return [number_or_none(value) for value in values]

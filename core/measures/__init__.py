@@ -1,0 +1,1 @@
+"""Measures: numbers read off the representative beat and off each beat."""

@@ -1,0 +1,1 @@
+"""Quality: whether a lead can be trusted with a judgement."""

@@ -1,0 +1,1 @@
+"""Recordings: twelve leads of one person, and the files that hold them."""

@@ -1,0 +1,1 @@
+"""Volume conductor: what currents in the heart do to the potential of the skin. SI units."""

@@ -1,0 +1,28 @@
+"""Samespot's engine: is a change between two ECGs the heart, or did the electrodes move?"""
+
+from __future__ import annotations
+
+from core.comparison.compare import compare
+from core.comparison.results import Comparison
+from core.errors import ComparisonError, NotEnoughBeats, RecordingError
+from core.measures.report import RecordingReport, measure
+from core.placement.moved import ElectrodeMove, move_electrodes
+from core.recordings.read import read_recording
+from core.recordings.recording import Recording
+from core.settings import Settings, Spread
+
+__all__ = [
+    "Comparison",
+    "ComparisonError",
+    "ElectrodeMove",
+    "NotEnoughBeats",
+    "Recording",
+    "RecordingError",
+    "RecordingReport",
+    "Settings",
+    "Spread",
+    "compare",
+    "measure",
+    "move_electrodes",
+    "read_recording",
+]

@@ -65,7 +65,8 @@ def lags_to_template(
     Parameters
     ----------
     windows : ndarray, shape (n_beats, n_leads, n + 2 * largest)
-    template : ndarray, shape (n_leads, n)
+    template : ndarray, shape (n_leads, n) or (n_beats, n_leads, n)
+        One for all windows, or one for each.
     largest : int
         Largest lag looked at, in samples.
 
@@ -76,8 +77,9 @@ def lags_to_template(
     """
     n = template.shape[-1]
     centred = template - template.mean(axis=-1, keepdims=True)
+    centred = np.broadcast_to(centred, (windows.shape[0], *centred.shape[-2:]))
     views = np.lib.stride_tricks.sliding_window_view(windows, n, axis=-1)
-    product = np.einsum("blkn,ln->bk", views, centred)
+    product = np.einsum("blkn,bln->bk", views, centred, optimize=True)
     best = np.clip(np.argmax(product, axis=1), 1, 2 * largest - 1)
     rows = np.arange(best.size)
     left, top, right = product[rows, best - 1], product[rows, best], product[rows, best + 1]

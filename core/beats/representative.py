@@ -9,6 +9,11 @@ from numpy.typing import NDArray
 TRIMMED_SHARE = 0.2
 
 
+def trimmed_at_each_end(n_beats: int) -> int:
+    """How many of the sorted values are left out at each end."""
+    return min(int(np.ceil(TRIMMED_SHARE * n_beats)), (n_beats - 1) // 2)
+
+
 def representative_of(aligned: NDArray[np.float64]) -> NDArray[np.float64]:
     """Trimmed mean over beats, sample by sample and lead by lead.
 
@@ -21,7 +26,7 @@ def representative_of(aligned: NDArray[np.float64]) -> NDArray[np.float64]:
     ndarray, shape (n_leads, n)
     """
     n = aligned.shape[0]
-    cut = min(int(np.ceil(TRIMMED_SHARE * n)), (n - 1) // 2)
+    cut = trimmed_at_each_end(n)
     ordered = np.sort(aligned, axis=0)
     return np.asarray(ordered[cut : n - cut].mean(axis=0))
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -37,6 +37,26 @@ class Points:
     def st(self) -> int:
         """The ST point, so long after J as the settings say."""
         return self.j + round(self.st_point_ms / 1000.0 * self.rate_hz)
+
+    def starting_at(self, sample: int) -> Points:
+        """The same points of beats that are cut to start at a sample."""
+        f = self.fiducials
+        moved = replace(
+            f,
+            qrs_onset=f.qrs_onset - sample,
+            qrs_offset=f.qrs_offset - sample,
+            t_peak=f.t_peak - sample,
+            t_offset=f.t_offset - sample,
+            p_onset=None,
+            p_offset=None,
+        )
+        return replace(self, fiducials=moved)
+
+    def isoelectric_window(self) -> slice:
+        """Just before the QRS."""
+        onset = self.fiducials.qrs_onset
+        start = max(0, onset - round(ISOELECTRIC_S * self.rate_hz))
+        return slice(start, max(onset, start + 1))
 
     def t_window(self) -> slice:
         """Where the T wave's extreme is looked for."""
@@ -87,9 +107,7 @@ def measure_lead_values(
 
 def isoelectric_level(beats_mv: NDArray[np.float64], points: Points) -> NDArray[np.float64]:
     """Level just before the QRS, last axis kept with length 1."""
-    onset = points.fiducials.qrs_onset
-    start = max(0, onset - round(ISOELECTRIC_S * points.rate_hz))
-    return np.asarray(beats_mv[..., start : max(onset, start + 1)].mean(axis=-1, keepdims=True))
+    return np.asarray(beats_mv[..., points.isoelectric_window()].mean(axis=-1, keepdims=True))
 
 
 def signed_extreme(segment: NDArray[np.float64]) -> NDArray[np.float64]:

@@ -1,0 +1,1 @@
+"""Comparison: two recordings of one person, judged lead by lead."""

@@ -1,0 +1,165 @@
+"""The result of a comparison: frozen, complete, and the JSON of the contract."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import datetime
+from typing import Any
+
+from core.comparison.laid import LaidBeats
+from core.comparison.pairing import BeatPair
+from core.json_numbers import number_or_none
+from core.measures.report import RecordingReport
+from core.notices import Notice
+from core.settings import Settings
+from core.version import PROGRAM_NAME, program_version
+from core.wording.caution import PLACEMENT_CAVEAT
+
+CONTRACT = "samespot-comparison/1"
+
+
+@dataclass(frozen=True, slots=True)
+class MeasureChange:
+    """One measure of one lead in both recordings; None where it could not be measured.
+
+    ``noise``, ``reach`` and ``remainder`` ranges hold `Settings.confidence` of the cases that
+    they describe; see `core.comparison.compare`.
+    """
+
+    earlier: float | None
+    later: float | None
+    change: float | None
+    noise_low: float | None
+    noise_high: float | None
+    reach_low: float | None
+    reach_high: float | None
+    expected: float | None
+    remainder: float | None
+    remainder_low: float | None
+    remainder_high: float | None
+
+    def to_dict(self) -> dict[str, float | None]:
+        """The measure as JSON writes it."""
+        return {name: number_or_none(getattr(self, name)) for name in self.__slots__}
+
+
+NOTHING = MeasureChange(*[None] * 11)
+
+
+@dataclass(frozen=True, slots=True)
+class LeadComparison:
+    """One lead: its measures, its judgement, and the numbers that decided, in a sentence."""
+
+    measures: dict[str, MeasureChange]
+    judgement: str
+    reason: str
+
+    def to_dict(self) -> dict[str, Any]:
+        """The lead as JSON writes it."""
+        return {
+            "measures": {name: change.to_dict() for name, change in self.measures.items()},
+            "judgement": self.judgement,
+            "reason": self.reason,
+        }
+
+
+@dataclass(frozen=True, slots=True)
+class ShiftRange:
+    """Estimated displacement in one direction, with its range, in mm."""
+
+    estimate: float
+    low: float
+    high: float
+
+    def to_dict(self) -> dict[str, float]:
+        """The range as JSON writes it."""
+        return {"estimate": self.estimate, "low": self.low, "high": self.high}
+
+
+@dataclass(frozen=True, slots=True)
+class ElectrodeShift:
+    """Where one chest electrode of the later recording lies against the earlier."""
+
+    up_mm: ShiftRange
+    left_mm: ShiftRange
+
+    def to_dict(self) -> dict[str, dict[str, float]]:
+        """The shift as JSON writes it."""
+        return {"up_mm": self.up_mm.to_dict(), "left_mm": self.left_mm.to_dict()}
+
+
+@dataclass(frozen=True, slots=True)
+class Placement:
+    """What the QRS says of the placement, and how rarely placement explains the rest."""
+
+    electrodes: dict[str, ElectrodeShift | None]
+    tail_probability: float | None
+    model_name: str
+    model_version: str
+
+    def to_dict(self) -> dict[str, Any]:
+        """The placement as JSON writes it."""
+        return {
+            "electrodes": {
+                name: None if shift is None else shift.to_dict()
+                for name, shift in self.electrodes.items()
+            },
+            "tail_probability": self.tail_probability,
+            "model": {"name": self.model_name, "version": self.model_version},
+        }
+
+
+@dataclass(frozen=True, slots=True)
+class Overall:
+    """The judgement of the pair: its code, what was found, and what to do next."""
+
+    judgement: str
+    sentence: str
+    next_step: str
+
+    def to_dict(self) -> dict[str, str]:
+        """The overall judgement as JSON writes it."""
+        return {
+            "judgement": self.judgement,
+            "sentence": self.sentence,
+            "next_step": self.next_step,
+        }
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Comparison:
+    """Two recordings of one person, compared."""
+
+    settings: Settings
+    made_at: datetime
+    earlier: RecordingReport
+    later: RecordingReport
+    laid: LaidBeats
+    beat_pairs: tuple[BeatPair, ...]
+    leads: dict[str, LeadComparison]
+    placement: Placement
+    overall: Overall
+    notices: tuple[Notice, ...]
+
+    def to_dict(self) -> dict[str, Any]:
+        """The comparison of the contract."""
+        return head(self.settings, self.made_at) | {
+            "earlier": self.earlier.to_dict(),
+            "later": self.later.to_dict(),
+            "beat_pairs": [pair.to_dict() for pair in self.beat_pairs],
+            "leads": {name: lead.to_dict() for name, lead in self.leads.items()},
+            "placement": self.placement.to_dict(),
+            "overall": self.overall.to_dict(),
+            "notices": [notice.to_dict() for notice in self.notices],
+            "caveat": PLACEMENT_CAVEAT,
+        }
+
+
+def head(settings: Settings, made_at: datetime) -> dict[str, Any]:
+    """What every comparison JSON starts with."""
+    return {
+        "contract": CONTRACT,
+        "made_by": {"name": PROGRAM_NAME, "version": program_version()},
+        "made_at": made_at.isoformat(timespec="seconds"),
+        "settings": settings.to_dict(),
+    }

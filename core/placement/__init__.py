@@ -1,0 +1,1 @@
+"""Placement: what electrodes elsewhere would have recorded, and where they were."""

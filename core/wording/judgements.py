@@ -1,0 +1,205 @@
+"""The judgements in words: marks, reasons, the overall sentence and what to do next."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from core.wording.notices import joined
+from core.wording.numbers import millivolts, plain, signed_range
+
+WORDS = {
+    "steady": "steady",
+    "in-reach-backed": "in reach, backed",
+    "in-reach-unbacked": "in reach, not backed",
+    "beyond-reach": "beyond reach",
+    "not-judged": "not judged",
+}
+MARKS = {
+    "steady": "\N{BLACK CIRCLE}",
+    "in-reach-backed": "\N{BLACK DIAMOND}",
+    "in-reach-unbacked": "\N{WHITE DIAMOND}",
+    "beyond-reach": "\N{BLACK UP-POINTING TRIANGLE}",
+    "not-judged": "\N{EN DASH}",
+}
+MEANINGS = {
+    "steady": "ST and T changed by no more than repeat noise.",
+    "in-reach-backed": (
+        "The change is beyond repeat noise, no larger than electrode shifts can make it, and the "
+        "QRS changed as such a shift would change it."
+    ),
+    "in-reach-unbacked": (
+        "The change is beyond repeat noise and no larger than electrode shifts can make it, but "
+        "the QRS does not point to a shift that would make it."
+    ),
+    "beyond-reach": "The change is larger than electrode shifts can make it.",
+    "not-judged": "The recordings do not allow a judgement in this lead.",
+}
+SHORT_NAMES = {"st_mv": "ST", "t_mv": "T"}
+
+
+@dataclass(frozen=True, slots=True)
+class Deciding:
+    """One measure's numbers, as the sentences need them; in mV."""
+
+    name: str  # "ST" or "T"
+    change: float
+    noise: float
+    reach_low: float | None
+    reach_high: float | None
+    expected: float | None
+    remainder: float | None
+    remainder_low: float | None
+    remainder_high: float | None
+
+
+@dataclass(frozen=True, slots=True)
+class ShiftWords:
+    """An electrode's estimated shift in one direction, in mm; positive is up or left."""
+
+    electrode: str
+    direction: str  # "up" or "left"
+    estimate: float
+    low: float
+    high: float
+
+    @property
+    def certain(self) -> bool:
+        """Whether the range excludes no shift at all."""
+        return self.low > 0 or self.high < 0
+
+    def describe(self) -> str:
+        """``"V2 about 27 mm up (95 %: 14 to 37)"``."""
+        word, sign = self.direction, 1.0
+        if self.estimate < 0:
+            word, sign = {"up": "down", "left": "to the right"}[self.direction], -1.0
+        elif word == "left":
+            word = "to the left"
+        ends = sorted((sign * self.low, sign * self.high))
+        return (
+            f"{self.electrode} about {plain(abs(self.estimate))} mm {word} "
+            f"(95 %: {plain(ends[0])} to {plain(ends[1])})"
+        )
+
+
+def reason_steady(measures: Sequence[Deciding]) -> str:
+    """Why a lead is steady."""
+    parts = [f"{m.name} {millivolts(m.change)} (repeat noise ±{m.noise:.2f})" for m in measures]
+    return f"{joined(parts)}: inside repeat noise."
+
+
+def reason_beyond(m: Deciding, *, limb: bool) -> str:
+    """Why a lead is beyond reach."""
+    if limb:
+        return (
+            f"{m.name} {millivolts(m.change)}: chest electrode shifts cannot change a limb lead, "
+            f"and repeat noise is ±{m.noise:.2f} mV."
+        )
+    return (
+        f"{m.name} {millivolts(m.change)}: beyond what electrode shifts can make here "
+        f"({signed_range(m.reach_low, m.reach_high)} mV)."
+    )
+
+
+def reason_in_reach(m: Deciding, *, backed: bool) -> str:
+    """Why a lead is in reach, backed or not."""
+    within = (
+        f"{m.name} {millivolts(m.change)}: inside the reach "
+        f"({signed_range(m.reach_low, m.reach_high)} mV)"
+    )
+    but = "; the QRS points to a shift" if backed else "; but the QRS points to a shift"
+    return (
+        f"{within}{but} that makes {millivolts(m.expected)}, which leaves "
+        f"{millivolts(m.remainder)} ({signed_range(m.remainder_low, m.remainder_high)})."
+    )
+
+
+def reason_not_judged(why: str) -> str:
+    """Why a lead is not judged."""
+    return f"Not judged: {why}."
+
+
+def overall_sentence(
+    by_code: Mapping[str, Sequence[str]],
+    largest: Mapping[str, Deciding],
+    shifts: Sequence[ShiftWords],
+) -> str:
+    """What was found, in one or two sentences.
+
+    Parameters
+    ----------
+    by_code : mapping of judgement code to leads
+    largest : mapping of judgement code to the largest change among its leads
+    shifts : sequence of ShiftWords
+        Of the electrodes of leads that are in reach and backed, those that are certain.
+    """
+    parts = []
+    if beyond := by_code.get("beyond-reach"):
+        parts.append(
+            f"{joined(beyond)}: changed beyond what electrode shifts can make, "
+            f"{_size(largest['beyond-reach'])}."
+        )
+    if unbacked := by_code.get("in-reach-unbacked"):
+        parts.append(
+            f"{joined(unbacked)}: changed within placement reach, but the QRS does not back "
+            f"a shift, {_size(largest['in-reach-unbacked'])}."
+        )
+    if backed := by_code.get("in-reach-backed"):
+        parts.append(
+            f"{joined(backed)}: the change is within placement reach, and the QRS backs it, "
+            f"{_size(largest['in-reach-backed'])}."
+        )
+        if shifts:
+            parts.append(
+                f"Estimated in the later recording: {joined([s.describe() for s in shifts])}."
+            )
+    steady, not_judged = by_code.get("steady", ()), by_code.get("not-judged", ())
+    if not parts and steady:
+        everywhere = "No lead" if not not_judged else "None of the leads that can be judged"
+        parts.append(f"{everywhere} changed beyond repeat noise.")
+    elif steady:
+        parts.append("All other leads steady." if not not_judged else "Others steady.")
+    if not_judged:
+        parts.append(f"Not judged: {joined(not_judged)}.")
+    return " ".join(parts)
+
+
+def next_step(by_code: Mapping[str, Sequence[str]]) -> str:
+    """What to do next."""
+    if by_code.get("beyond-reach"):
+        return (
+            "Next: read it as a change of the heart until shown otherwise; record again with the "
+            "sites checked, without delaying care."
+        )
+    if unbacked := by_code.get("in-reach-unbacked"):
+        return (
+            f"Next: the heart may have changed; check {_sites(unbacked)} and record again, "
+            "without delaying care."
+        )
+    if backed := by_code.get("in-reach-backed"):
+        return f"Next: check {_sites(backed)} and record again."
+    if by_code.get("steady"):
+        return "Next: steady does not rule out ischaemia; with lasting symptoms, record again."
+    return "Next: check the electrodes and record again."
+
+
+def _size(m: Deciding) -> str:
+    return f"largest {m.name} {millivolts(m.change)}"
+
+
+_SITE_OF = {
+    "V1": "V1 in the fourth space at the right sternal border",
+    "V2": "V2 in the fourth space at the left sternal border",
+    "V3": "V3 half-way between V2 and V4",
+    "V4": "V4 in the fifth space at the midclavicular line",
+    "V5": "V5 half-way between V4 and V6",
+    "V6": "V6 at V4's level at the midaxillary line",
+}
+
+
+def _sites(leads: Sequence[str]) -> str:
+    """The sites to check; V1 and V2 share one phrase."""
+    sites = [_SITE_OF[lead] for lead in leads if lead in _SITE_OF]
+    if "V1" in leads and "V2" in leads:
+        sites = ["V1 and V2 in the fourth space at the sternal borders", *sites[2:]]
+    return joined(sites) if sites else "the electrodes"

@@ -1,0 +1,36 @@
+"""Numbers as readers see them: signed, rounded, with their unit."""
+
+from __future__ import annotations
+
+MINUS = "\N{MINUS SIGN}"
+NONE = "\N{EN DASH}"  # stands where a value could not be measured
+NARROW = "\N{NO-BREAK SPACE}"
+
+
+def signed(value: float | None, digits: int = 2) -> str:
+    """``"+0.12"``, ``"−0.03"``, ``"0.00"``; a dash for None."""
+    if value is None:
+        return NONE
+    rounded = round(value, digits)
+    if rounded == 0:
+        return f"{0:.{digits}f}"
+    return f"{'+' if rounded > 0 else MINUS}{abs(rounded):.{digits}f}"
+
+
+def plain(value: float | None, digits: int = 0) -> str:
+    """Unsigned unless negative; a dash for None."""
+    if value is None:
+        return NONE
+    rounded = round(value, digits)
+    text = f"{abs(rounded):.{digits}f}"
+    return f"{MINUS}{text}" if rounded < 0 else text
+
+
+def signed_range(low: float | None, high: float | None, digits: int = 2) -> str:
+    """``"−0.10 to +0.12"``."""
+    return f"{signed(low, digits)} to {signed(high, digits)}"
+
+
+def millivolts(value: float | None) -> str:
+    """``"+0.12 mV"``."""
+    return f"{signed(value)}{NARROW}mV"

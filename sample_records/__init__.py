@@ -1,0 +1,1 @@
+"""Invented recordings and the code that makes them."""

@@ -1,0 +1,1 @@
+"""Make the sample recordings: an invented heart in an invented trunk."""

@@ -1,4 +1,4 @@
-"""Samespot's engine: is a change between two ECGs the heart, or did the electrodes move?"""
+"""The engine of Samespot: tells a change of the heart from a change of the electrodes."""
 
 from __future__ import annotations
 

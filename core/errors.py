@@ -26,11 +26,11 @@ class ComparisonError(SamespotError):
     """The recordings were read, but cannot be measured or compared."""
 
 
-class NotEnoughBeats(ComparisonError):
+class NotEnoughBeats(ComparisonError):  # noqa: N818, it reads as what happened
     """Fewer usable beats than a measurement needs."""
 
 
-class Stopped(ComparisonError):
+class Stopped(ComparisonError):  # noqa: N818, as above
     """The caller asked for the work to end before it was done."""
 
 

@@ -14,7 +14,7 @@ def resources_folder() -> Path:
 
 def samples_folder() -> Path:
     """Folder with the sample recordings."""
-    return _shipped("sample_records")
+    return _shipped("sample_records") / "records"
 
 
 def _shipped(name: str) -> Path:

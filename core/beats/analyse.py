@@ -90,7 +90,8 @@ def analyse_beats(recording: Recording) -> BeatAnalysis:
     raw = independent_from_twelve(recording.signal_mv.T)
     missing = np.isnan(raw)
     raw = bridge_gaps(np.where(missing, 0.0, raw), missing)
-    gap = missing.any(axis=0) & ~missing.all(axis=1).any()
+    # A lead that holds nothing at all is a matter of its own grade, not of every beat.
+    gap = np.asarray(missing[~missing.all(axis=1)].any(axis=0))
 
     centres = detect_beats(raw, rate)
     if centres.size < FEWEST_BEATS:
@@ -170,9 +171,7 @@ class _Rounds:
     def _whole(self) -> NDArray[np.int64]:
         return np.rint(self.centres).astype(np.int64)
 
-    def _aligned(
-        self, before: int, after: int, chosen: NDArray[np.int64]
-    ) -> NDArray[np.float64]:
+    def _aligned(self, before: int, after: int, chosen: NDArray[np.int64]) -> NDArray[np.float64]:
         whole = self._whole()[chosen]
         windows = cut_windows(self.signal, whole, before, after)
         return shifted(windows, self.centres[chosen] - whole)
@@ -192,7 +191,6 @@ class _Rounds:
         self.centres = np.clip(
             self.centres + int(np.argmax(size)) - self.half, 0, self.n_samples - 1
         )
-        self.template_alike = template
 
     def _reasons(self) -> list[str | None]:
         """Why each beat is left out of the representative beat; None where it is used."""

@@ -78,15 +78,11 @@ def spatial_velocity(
     smooth = low_pass(beat_mv, cutoff_hz=highest_hz, sampling_rate_hz=rate_hz)
     half = max(1, round(span_s * rate_hz / 2))
     slope = np.zeros_like(smooth)
-    slope[:, half:-half] = (smooth[:, 2 * half :] - smooth[:, : -2 * half]) * (
-        rate_hz / (2 * half)
-    )
+    slope[:, half:-half] = (smooth[:, 2 * half :] - smooth[:, : -2 * half]) * (rate_hz / (2 * half))
     return np.asarray(np.sqrt(np.mean(slope**2, axis=0)))
 
 
-def first_quiet(
-    velocity: NDArray[np.float64], threshold: float, hold: int, otherwise: int
-) -> int:
+def first_quiet(velocity: NDArray[np.float64], threshold: float, hold: int, otherwise: int) -> int:
     """First index from which the velocity stays under a threshold for *hold* samples."""
     below = (velocity < threshold).astype(np.int64)
     if below.size < hold:

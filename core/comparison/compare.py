@@ -1,5 +1,7 @@
-"""Compare two recordings of one person: the one function that window, command line, series
-and audit call."""
+"""Compare two recordings of one person.
+
+The one function that window, command line, series and audit call.
+"""
 
 from __future__ import annotations
 
@@ -10,7 +12,15 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.comparison.gate import pair_notices
-from core.comparison.judge import BACKED, BEYOND, DECIDING, NOT_JUDGED, STEADY, judge_lead, judge_pair
+from core.comparison.judge import (
+    BACKED,
+    BEYOND,
+    DECIDING,
+    NOT_JUDGED,
+    STEADY,
+    judge_lead,
+    judge_pair,
+)
 from core.comparison.laid import lay_beats
 from core.comparison.pairing import pair_beats
 from core.comparison.results import (
@@ -39,6 +49,10 @@ from core.recordings.recording import Recording
 from core.settings import Settings
 from core.torso.ensemble import MODEL_NAME, load_ensemble
 from core.wording import judgements as say
+
+# A smaller shift is within what careful staff place apart (12 mm in each direction, from
+# McCann 2007), and is not worth a word.
+SMALLEST_NAMED_MM = 12.0
 
 Progress = Callable[[float, str], None]
 Numbers = dict[str, NDArray[np.float64]]
@@ -110,7 +124,7 @@ def compare(
 
     step(0.95, "judging")
     leads = {
-        lead: _compare_lead(row, first, second, noise, reach, expected, settings)
+        lead: _compare_lead(row, first, second, noise, reach, expected, shifts.get(lead), settings)
         for row, lead in enumerate(TWELVE_LEADS)
     }
     change = {name: second.values[name] - first.values[name] for name in COMPARED}
@@ -145,6 +159,7 @@ def _shift_of(posterior: ShiftPosterior, confidence: float) -> ElectrodeShift:
     return ElectrodeShift(
         up_mm=ShiftRange(*posterior.range_of(posterior.up_mm, confidence)),
         left_mm=ShiftRange(*posterior.range_of(posterior.left_mm, confidence)),
+        qrs_points_to_shift=posterior.points_to_a_shift,
     )
 
 
@@ -155,6 +170,7 @@ def _compare_lead(
     noise: Numbers,
     reach: Reach,
     expected: Expected,
+    shift: ShiftPosterior | None,
     settings: Settings,
 ) -> LeadComparison:
     unusable = [
@@ -172,8 +188,10 @@ def _compare_lead(
         name: _measure_change(name, row, first, second, noise, reach, expected, settings)
         for name in COMPARED
     }
-    code = judge_lead(measures)
-    return LeadComparison(measures, code, _reason(code, TWELVE_LEADS[row], measures))
+    points_to_shift = shift is not None and shift.points_to_a_shift
+    code = judge_lead(measures, qrs_points_to_shift=points_to_shift)
+    reason = _reason(code, TWELVE_LEADS[row], measures, points_to_shift=points_to_shift)
+    return LeadComparison(measures, code, reason)
 
 
 def _measure_change(
@@ -239,7 +257,9 @@ def _deciding(measures: dict[str, MeasureChange]) -> list[say.Deciding]:
     return found
 
 
-def _reason(code: str, lead: str, measures: dict[str, MeasureChange]) -> str:
+def _reason(
+    code: str, lead: str, measures: dict[str, MeasureChange], *, points_to_shift: bool
+) -> str:
     deciding = _deciding(measures)
     if code == NOT_JUDGED or not deciding:
         return say.reason_not_judged("neither ST nor T could be measured in both recordings")
@@ -253,7 +273,7 @@ def _reason(code: str, lead: str, measures: dict[str, MeasureChange]) -> str:
     most = max(deciding, key=lambda m: abs(m.change) / m.noise)
     if code != BACKED:
         most = max(deciding, key=lambda m: abs(m.remainder or 0.0) / m.noise)
-    return say.reason_in_reach(most, backed=code == BACKED)
+    return say.reason_in_reach(most, backed=code == BACKED, points_to_shift=points_to_shift)
 
 
 def _excess(change: float, low: float | None, high: float | None) -> float:
@@ -263,32 +283,28 @@ def _excess(change: float, low: float | None, high: float | None) -> float:
 
 
 def _overall(leads: dict[str, LeadComparison], placement: Placement) -> Overall:
-    by_code: dict[str, list[str]] = {}
-    largest: dict[str, say.Deciding] = {}
+    changes: dict[str, dict[str, say.Deciding | None]] = {}
     for lead, comparison in leads.items():
-        code = comparison.judgement
-        by_code.setdefault(code, []).append(lead)
-        for m in _deciding(comparison.measures):
-            if code not in largest or abs(m.change) > abs(largest[code].change):
-                largest[code] = m
+        deciding = _deciding(comparison.measures)
+        most = max(deciding, key=lambda m: abs(m.change) / m.noise, default=None)
+        changes.setdefault(comparison.judgement, {})[lead] = most
     return Overall(
-        judgement=judge_pair(by_code),
-        sentence=say.overall_sentence(
-            by_code, largest, _certain_shifts(by_code.get(BACKED, []), placement)
-        ),
-        next_step=say.next_step(by_code),
+        judgement=judge_pair(changes),
+        sentence=say.overall_sentence(changes, shifts_worth_naming(placement)),
+        next_step=say.next_step(changes),
     )
 
 
-def _certain_shifts(backed: list[str], placement: Placement) -> list[say.ShiftWords]:
-    """Shifts of the backed leads' electrodes whose range excludes 0."""
+def shifts_worth_naming(placement: Placement) -> list[say.ShiftWords]:
+    """Shifts that the QRS points to, in the directions whose range excludes 0."""
     found = []
-    for lead in backed:
-        shift = placement.electrodes.get(lead)
-        if shift is None:
+    for electrode, shift in placement.electrodes.items():
+        if shift is None or not shift.qrs_points_to_shift:
             continue
         for direction, size in (("up", shift.up_mm), ("left", shift.left_mm)):
-            words = say.ShiftWords(lead, direction, size.estimate, size.low, size.high)
-            if words.certain:
-                found.append(words)
+            certain = size.low > 0 or size.high < 0
+            if certain and abs(size.estimate) >= SMALLEST_NAMED_MM:
+                found.append(
+                    say.ShiftWords(electrode, direction, size.estimate, size.low, size.high)
+                )
     return found

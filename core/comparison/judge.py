@@ -16,17 +16,15 @@ BY_WEIGHT = (BEYOND, UNBACKED, BACKED, STEADY, NOT_JUDGED)
 
 # The measures that a lead is judged by: ST and T.
 DECIDING = ("st_mv", "t_mv")
-# A shift backs a change when it explains at least this share of it.
-LEAST_EXPLAINED = 0.5
 
 
-def judge_lead(measures: dict[str, MeasureChange]) -> str:
+def judge_lead(measures: dict[str, MeasureChange], *, qrs_points_to_shift: bool) -> str:
     """Judge a lead by the changes of its ST and T.
 
     - steady: all inside the repeat noise;
     - beyond-reach: one of them outside the placement reach;
-    - in-reach-backed: the shift that the QRS points to leaves nothing beyond noise, or explains
-      at least half and leaves a range that holds 0;
+    - in-reach-backed: the QRS points to a shift, and the change that it makes leaves nothing
+      (the remainder's range holds 0, or the remainder lies inside the repeat noise);
     - in-reach-unbacked: otherwise;
     - not-judged: neither ST nor T could be compared.
     """
@@ -38,7 +36,15 @@ def judge_lead(measures: dict[str, MeasureChange]) -> str:
         return STEADY
     if any(outside(m.change, m.reach_low, m.reach_high) for m in moved):
         return BEYOND
-    return BACKED if all(_is_backed(m) for m in moved) else UNBACKED
+    backed = qrs_points_to_shift and not any(leaves_something(m) for m in moved)
+    return BACKED if backed else UNBACKED
+
+
+def leaves_something(m: MeasureChange) -> bool:
+    """Whether the expected change leaves more of the recorded one than chance would."""
+    return outside(m.remainder, m.noise_low, m.noise_high) and outside(
+        0.0, m.remainder_low, m.remainder_high
+    )
 
 
 def judge_pair(judgements: Iterable[str]) -> str:
@@ -52,12 +58,3 @@ def outside(value: float | None, low: float | None, high: float | None) -> bool:
     if value is None or low is None or high is None:
         return False
     return not low <= value <= high
-
-
-def _is_backed(m: MeasureChange) -> bool:
-    if not outside(m.remainder, m.noise_low, m.noise_high):
-        return True
-    if m.remainder is None or m.change is None:
-        return False
-    holds_zero = not outside(0.0, m.remainder_low, m.remainder_high)
-    return holds_zero and abs(m.remainder) <= (1 - LEAST_EXPLAINED) * abs(m.change)

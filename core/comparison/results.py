@@ -13,7 +13,7 @@ from core.measures.report import RecordingReport
 from core.notices import Notice
 from core.settings import Settings
 from core.version import PROGRAM_NAME, program_version
-from core.wording.caution import PLACEMENT_CAVEAT
+from core.wording.caution import CAUTIONS, PLACEMENT_CAVEAT
 
 CONTRACT = "samespot-comparison/1"
 
@@ -78,14 +78,23 @@ class ShiftRange:
 
 @dataclass(frozen=True, slots=True)
 class ElectrodeShift:
-    """Where one chest electrode of the later recording lies against the earlier."""
+    """Where one chest electrode of the later recording lies against the earlier.
+
+    ``qrs_points_to_shift`` says whether the QRS changed more than repeat noise makes it change,
+    in the way of a shift.
+    """
 
     up_mm: ShiftRange
     left_mm: ShiftRange
+    qrs_points_to_shift: bool
 
-    def to_dict(self) -> dict[str, dict[str, float]]:
+    def to_dict(self) -> dict[str, Any]:
         """The shift as JSON writes it."""
-        return {"up_mm": self.up_mm.to_dict(), "left_mm": self.left_mm.to_dict()}
+        return {
+            "up_mm": self.up_mm.to_dict(),
+            "left_mm": self.left_mm.to_dict(),
+            "qrs_points_to_shift": self.qrs_points_to_shift,
+        }
 
 
 @dataclass(frozen=True, slots=True)
@@ -152,6 +161,7 @@ class Comparison:
             "overall": self.overall.to_dict(),
             "notices": [notice.to_dict() for notice in self.notices],
             "caveat": PLACEMENT_CAVEAT,
+            "cautions": list(CAUTIONS),
         }
 
 

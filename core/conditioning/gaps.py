@@ -6,9 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 
-def bridge_gaps(
-    signal: NDArray[np.float64], missing: NDArray[np.bool_]
-) -> NDArray[np.float64]:
+def bridge_gaps(signal: NDArray[np.float64], missing: NDArray[np.bool_]) -> NDArray[np.float64]:
     """Straight lines across the missing samples of each row; 0 where a whole row is missing.
 
     Parameters

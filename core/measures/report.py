@@ -23,10 +23,12 @@ from core.measures.lead_values import (
 from core.measures.vectors import angle_between_deg, frontal_axis_deg, kors_vector
 from core.notices import Notice
 from core.quality.lead_quality import LeadQuality, grade_leads
+from core.quality.limb_algebra import limb_lead_contradiction_mv
 from core.recordings.leads import TWELVE_LEADS, independent_from_twelve, twelve_from_independent
 from core.recordings.recording import Recording
 from core.settings import Settings
 from core.wording import notices as say
+from core.wording.caution import CAUTIONS
 
 CONTRACT = "samespot-recording/1"
 
@@ -67,7 +69,8 @@ class RecordingReport:
     @property
     def time_ms(self) -> NDArray[np.float64]:
         """Times of the samples of the representative beat, relative to R."""
-        return (np.arange(self.beat_mv.shape[1]) - self.analysis.r_index) * self.step_ms
+        samples = np.arange(self.beat_mv.shape[1]) - self.analysis.r_index
+        return np.asarray(samples * self.step_ms)
 
     @property
     def heart_rate_per_min(self) -> float:
@@ -196,6 +199,7 @@ def describe(recording: Recording, notices: tuple[Notice, ...] = ()) -> dict[str
             )
         ),
         "notices": [notice.to_dict() for notice in notices or recording.notices],
+        "cautions": list(CAUTIONS),
     }
 
 
@@ -246,7 +250,7 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         noise_uv=1000.0 * np.sqrt(np.mean(residual_mv**2, axis=(0, 2))),
         quality=quality,
         rr_s=float(np.mean(np.diff([beat.r_time_s for beat in analysis.beats]))),
-        notices=(*recording.notices, *_notices(analysis, quality, points)),
+        notices=(*recording.notices, *_notices(recording, analysis, quality, points)),
     )
 
 
@@ -265,7 +269,7 @@ def _p_wave_mv(beat_mv: NDArray[np.float64], points: Points) -> NDArray[np.float
 
 
 def _notices(
-    analysis: BeatAnalysis, quality: tuple[LeadQuality, ...], points: Points
+    recording: Recording, analysis: BeatAnalysis, quality: tuple[LeadQuality, ...], points: Points
 ) -> tuple[Notice, ...]:
     found = []
     left_out = [beat.why_not for beat in analysis.beats if beat.why_not is not None]
@@ -274,6 +278,9 @@ def _notices(
     unusable = [(grade.lead, grade.reason) for grade in quality if not grade.usable]
     if unusable:
         found.append(say.leads_unusable(unusable))
+    contradiction_mv = limb_lead_contradiction_mv(recording)
+    if contradiction_mv is not None:
+        found.append(say.limb_leads_disagree(contradiction_mv))
     if points.fiducials.p_onset is None:
         found.append(say.no_p_wave())
     return tuple(found)

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.special import logsumexp
 
 from core.placement.foretell import FIRST_CHEST_ROW, Displacements
 from core.placement.person import Person, shift_electrode
@@ -38,13 +39,24 @@ class ShiftPosterior:
         Middles of the grid's cells.
     probability : ndarray, shape (n_variants, n_cells)
         Sums to 1.
+    log_support : float
+        Log of how much better the QRS's change is explained by a shift than by none (Bayes
+        factor); above 0 the QRS points to a shift.
     """
 
     left_mm: NDArray[np.float64]
     up_mm: NDArray[np.float64]
     probability: NDArray[np.float64]
+    log_support: float
 
-    def range_of(self, direction: NDArray[np.float64], confidence: float) -> tuple[float, float, float]:
+    @property
+    def points_to_a_shift(self) -> bool:
+        """Whether the QRS changed as a shift would change it, rather than by repeat noise."""
+        return self.log_support > 0.0
+
+    def range_of(
+        self, direction: NDArray[np.float64], confidence: float
+    ) -> tuple[float, float, float]:
         """Mean and central range of one direction's marginal.
 
         Parameters
@@ -102,6 +114,7 @@ def estimate_shifts(
         (left / max(settings.spread_mm.left, 1.0)) ** 2
         + (up / max(settings.spread_mm.up, 1.0)) ** 2
     )
+    log_prior -= logsumexp(log_prior)
     n = earlier_qrs_mv.shape[1]
     second = earlier_qrs_mv @ earlier_qrs_mv.T / n
     repeat_share = _repeat_share(earlier_qrs_mv, later_qrs_mv, person.usable)
@@ -122,11 +135,24 @@ def estimate_shifts(
             )
             scale = person.source_scale(variant, earlier_qrs_mv)
             variance = scale**2 * shift.variance + repeat
-            log_likelihood = -0.5 * EFFECTIVE_SAMPLES * (misfit / variance + np.log(variance))
-            log_posterior[position] = np.log(variant.weight) + log_prior + log_likelihood
-        weight = np.exp(log_posterior - log_posterior.max())
-        posteriors[name] = ShiftPosterior(left, up, weight / weight.sum())
+            log_posterior[position] = (
+                np.log(variant.weight) + log_prior + _log_likelihood(misfit, variance)
+            )
+        evidence = float(logsumexp(log_posterior))
+        posteriors[name] = ShiftPosterior(
+            left,
+            up,
+            probability=np.exp(log_posterior - evidence),
+            log_support=evidence - float(_log_likelihood(np.array(power), np.array(repeat))),
+        )
     return posteriors
+
+
+def _log_likelihood(
+    misfit: NDArray[np.float64], variance: NDArray[np.float64]
+) -> NDArray[np.float64]:
+    """Of a mean squared misfit (mV^2) over the QRS, for errors of a variance (mV^2)."""
+    return -0.5 * EFFECTIVE_SAMPLES * (misfit / variance + np.log(variance))
 
 
 def _repeat_share(

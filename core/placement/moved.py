@@ -6,8 +6,8 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
-from core.beats.analyse import BeatAnalysis
 from core.measures.report import RecordingReport, measure
 from core.placement.person import Person, shift_electrode, weigh_ensemble
 from core.quality.lead_quality import LeadQuality
@@ -15,7 +15,6 @@ from core.recordings.leads import CHEST_LEADS, INDEPENDENT_LEADS, TWELVE_LEADS
 from core.recordings.recording import Recording
 from core.settings import Settings
 from core.torso.ensemble import load_ensemble
-from numpy.typing import NDArray
 
 # As far as the ensemble's chest reaches around every electrode.
 FARTHEST_MM = 100.0

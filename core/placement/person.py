@@ -123,9 +123,7 @@ def weigh_ensemble(
     return Person(ensemble, variants, usable)
 
 
-def _evidence(
-    variant: Variant, scatter: NDArray[np.float64], usable: NDArray[np.bool_]
-) -> float:
+def _evidence(variant: Variant, scatter: NDArray[np.float64], usable: NDArray[np.bool_]) -> float:
     """Log marginal likelihood of one sample of the leads, the prior's scale at its best."""
     n = int(usable.sum())
     misfit = float(np.sum(variant.precision * scatter)) / n
@@ -181,4 +179,3 @@ def shift_electrode(
     own = 2 * MODEL_NOISE**2 * (1.0 - np.exp(-0.5 * (distance / OWN_PART_LENGTH_MM) ** 2))
     variance = np.maximum((change**2).sum(axis=1) - explained, 0.0) + own
     return Shift(gain.reshape(n, 8), variance)
-

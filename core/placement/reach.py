@@ -25,9 +25,7 @@ class Reach:
     high: dict[str, NDArray[np.float64]]
 
 
-def draw_shifts(
-    person: Person, settings: Settings, rng: np.random.Generator
-) -> Displacements:
+def draw_shifts(person: Person, settings: Settings, rng: np.random.Generator) -> Displacements:
     """Displacements between two recordings, each placed with the stated spread.
 
     Two placements differ by twice the variance of one.

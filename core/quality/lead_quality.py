@@ -31,8 +31,7 @@ class LeadQuality:
 def grade_leads(recording: Recording) -> tuple[LeadQuality, ...]:
     """Grade each of the twelve leads of a recording."""
     return tuple(
-        _grade(lead, recording.signal_mv[:, column])
-        for column, lead in enumerate(recording.leads)
+        _grade(lead, recording.signal_mv[:, column]) for column, lead in enumerate(recording.leads)
     )
 
 

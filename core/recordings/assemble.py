@@ -112,7 +112,9 @@ def _refuse_missing_leads(name: str, by_lead: dict[str, Channel]) -> None:
 
 
 def _refuse_impossible_voltage(name: str, channel: Channel) -> None:
-    largest = float(np.max(np.abs(channel.samples_mv), initial=0.0, where=~np.isnan(channel.samples_mv)))
+    largest = float(
+        np.max(np.abs(channel.samples_mv), initial=0.0, where=~np.isnan(channel.samples_mv))
+    )
     if not largest <= LARGEST_PLAUSIBLE_MV:
         raise RecordingError(
             f"{name}: lead {channel.lead} reaches {largest:.3g} mV, which no ECG does. "

@@ -150,7 +150,7 @@ def _rhythm_group(name: str, groups: list[_Group]) -> _Group:
 
 
 def _decode_group(name: str, dataset: Any, index: int) -> _Group:
-    from pydicom.waveforms import multiplex_array
+    from pydicom.waveforms.numpy_handler import multiplex_array
 
     group = dataset.WaveformSequence[index]
     stored = _sign_extended(multiplex_array(dataset, index, as_raw=True), group)

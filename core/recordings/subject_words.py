@@ -19,7 +19,7 @@ def sex_of_word(word: str | None) -> str | None:
 
 
 def age_of_word(word: str | None) -> float | None:
-    """Years for ``"81"``, ``"81 y"``, and DICOM's ``"042Y"``, ``"018M"``, ``"003W"``, ``"010D"``."""
+    """Years for ``"81"``, ``"81 y"``, and DICOM's ``"042Y"``, ``"018M"`` or ``"010D"``."""
     found = re.fullmatch(r"\s*(\d{1,3}(?:\.\d+)?)\s*([ymwd]?)\S*\s*", (word or "").lower())
     if found is None:
         return None

@@ -92,7 +92,9 @@ class Body:
         z, arc = self._height_table
         return np.asarray(np.interp(up_m, arc, z))
 
-    def angle_of(self, left_m: NDArray[np.float64], z_m: NDArray[np.float64]) -> NDArray[np.float64]:
+    def angle_of(
+        self, left_m: NDArray[np.float64], z_m: NDArray[np.float64]
+    ) -> NDArray[np.float64]:
         """Angle from the front of an arc along the section at a level."""
         angle, arc = self._arc_table
         return np.asarray(np.interp(left_m / self.section_scale(z_m), arc, angle))

@@ -61,9 +61,7 @@ def solve_body(
     """Mesh a body and factor its system."""
     mesh = mesh_skin(body)
     regions = [Region(mesh.surface, torso_s_per_m, 0.0)]
-    regions += [
-        Region(lung, lung_s_per_m, torso_s_per_m) for lung in body.lungs(LUNG_FREQUENCY)
-    ]
+    regions += [Region(lung, lung_s_per_m, torso_s_per_m) for lung in body.lungs(LUNG_FREQUENCY)]
     return SolvedBody(body, mesh, BodySolver(regions))
 
 

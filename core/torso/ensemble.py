@@ -71,7 +71,7 @@ class TorsoEnsemble:
         column, across = _cubic_weights(left_mm, self.left_mm)
         row, upward = _cubic_weights(up_mm, self.up_mm)
         around = self.chart[variant][row[:, :, None], column[:, None, :]]
-        return np.einsum("nj,ni,njir->nr", upward, across, around, optimize=True)
+        return np.asarray(np.einsum("nj,ni,njir->nr", upward, across, around, optimize=True))
 
 
 @lru_cache(maxsize=1)

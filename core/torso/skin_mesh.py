@@ -36,7 +36,11 @@ class SkinMesh:
     rows_m: NDArray[np.float64]
 
     def chart_values(
-        self, body: Body, values: NDArray[np.float64], left_m: NDArray[np.float64], up_m: NDArray[np.float64]
+        self,
+        body: Body,
+        values: NDArray[np.float64],
+        left_m: NDArray[np.float64],
+        up_m: NDArray[np.float64],
     ) -> NDArray[np.float64]:
         """Values known at the mesh's points, on a grid of skin coordinates.
 
@@ -63,9 +67,7 @@ class SkinMesh:
         # A ring's points keep their angle as the section narrows, so an arc at a narrower
         # level belongs to a longer arc of the largest section.
         scale = body.section_scale(body.height_of(up_m))
-        return np.stack(
-            [along(left_m / scale[row])[:, row] for row in range(up_m.size)], axis=0
-        )
+        return np.stack([along(left_m / scale[row])[:, row] for row in range(up_m.size)], axis=0)
 
 
 def mesh_skin(body: Body) -> SkinMesh:

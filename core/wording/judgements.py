@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass
 
-from core.wording.notices import joined
+from core.wording.lists import joined, named
 from core.wording.numbers import millivolts, plain, signed_range
 
 WORDS = {
@@ -63,11 +63,6 @@ class ShiftWords:
     low: float
     high: float
 
-    @property
-    def certain(self) -> bool:
-        """Whether the range excludes no shift at all."""
-        return self.low > 0 or self.high < 0
-
     def describe(self) -> str:
         """``"V2 about 27 mm up (95 %: 14 to 37)"``."""
         word, sign = self.direction, 1.0
@@ -101,16 +96,23 @@ def reason_beyond(m: Deciding, *, limb: bool) -> str:
     )
 
 
-def reason_in_reach(m: Deciding, *, backed: bool) -> str:
+def reason_in_reach(m: Deciding, *, backed: bool, points_to_shift: bool) -> str:
     """Why a lead is in reach, backed or not."""
     within = (
         f"{m.name} {millivolts(m.change)}: inside the reach "
         f"({signed_range(m.reach_low, m.reach_high)} mV)"
     )
-    but = "; the QRS points to a shift" if backed else "; but the QRS points to a shift"
+    if not points_to_shift:
+        return f"{within}, but the QRS hardly changed and does not point to a shift."
+    remains = f"{millivolts(m.remainder)} ({signed_range(m.remainder_low, m.remainder_high)})"
+    if backed:
+        return (
+            f"{within}; the QRS points to a shift that makes {millivolts(m.expected)}, which "
+            f"leaves {remains}."
+        )
     return (
-        f"{within}{but} that makes {millivolts(m.expected)}, which leaves "
-        f"{millivolts(m.remainder)} ({signed_range(m.remainder_low, m.remainder_high)})."
+        f"{within}, but the shift that the QRS points to makes {millivolts(m.expected)} and "
+        f"leaves {remains}."
     )
 
 
@@ -119,53 +121,60 @@ def reason_not_judged(why: str) -> str:
     return f"Not judged: {why}."
 
 
+_VERDICTS = {
+    "beyond-reach": "beyond what electrode shifts can make",
+    "in-reach-unbacked": "within placement reach, but the QRS does not back a shift",
+    "in-reach-backed": "within placement reach, and the QRS backs it",
+}
+
+
 def overall_sentence(
-    by_code: Mapping[str, Sequence[str]],
-    largest: Mapping[str, Deciding],
-    shifts: Sequence[ShiftWords],
+    changes: Mapping[str, Mapping[str, Deciding | None]], shifts: Sequence[ShiftWords]
 ) -> str:
-    """What was found, in one or two sentences.
+    """What was found, in a few sentences.
 
     Parameters
     ----------
-    by_code : mapping of judgement code to leads
-    largest : mapping of judgement code to the largest change among its leads
+    changes : mapping of judgement code to its leads, each with the change that decided
     shifts : sequence of ShiftWords
-        Of the electrodes of leads that are in reach and backed, those that are certain.
+        The estimated shifts that are worth naming.
     """
-    parts = []
-    if beyond := by_code.get("beyond-reach"):
-        parts.append(
-            f"{joined(beyond)}: changed beyond what electrode shifts can make, "
-            f"{_size(largest['beyond-reach'])}."
-        )
-    if unbacked := by_code.get("in-reach-unbacked"):
-        parts.append(
-            f"{joined(unbacked)}: changed within placement reach, but the QRS does not back "
-            f"a shift, {_size(largest['in-reach-unbacked'])}."
-        )
-    if backed := by_code.get("in-reach-backed"):
-        parts.append(
-            f"{joined(backed)}: the change is within placement reach, and the QRS backs it, "
-            f"{_size(largest['in-reach-backed'])}."
-        )
-        if shifts:
-            parts.append(
-                f"Estimated in the later recording: {joined([s.describe() for s in shifts])}."
-            )
-    steady, not_judged = by_code.get("steady", ()), by_code.get("not-judged", ())
+    parts = [
+        f"{_changes_in_words(changes[code])}: {verdict}."
+        for code, verdict in _VERDICTS.items()
+        if changes.get(code)
+    ]
+    steady, not_judged = changes.get("steady", {}), changes.get("not-judged", {})
     if not parts and steady:
-        everywhere = "No lead" if not not_judged else "None of the leads that can be judged"
+        everywhere = "None of the leads that can be judged" if not_judged else "No lead"
         parts.append(f"{everywhere} changed beyond repeat noise.")
-    elif steady:
-        parts.append("All other leads steady." if not not_judged else "Others steady.")
+        steady = {}
+    if shifts:
+        described = joined([shift.describe() for shift in shifts])
+        parts.append(f"The QRS puts {described} in the later recording.")
+    if steady:
+        parts.append("Other leads steady." if not_judged else "All other leads steady.")
     if not_judged:
-        parts.append(f"Not judged: {joined(not_judged)}.")
+        parts.append(f"Not judged: {named(list(not_judged))}.")
     return " ".join(parts)
 
 
-def next_step(by_code: Mapping[str, Sequence[str]]) -> str:
-    """What to do next."""
+def _changes_in_words(changes: Mapping[str, Deciding | None]) -> str:
+    """``"ST up to +0.20 mV in II, III and aVF; ST down to −0.11 mV in V1 to V6"``."""
+    groups: dict[tuple[str, bool], list[tuple[str, Deciding]]] = {}
+    for lead, change in changes.items():
+        if change is not None:
+            groups.setdefault((change.name, change.change > 0), []).append((lead, change))
+    words = []
+    for (name, rises), members in groups.items():
+        most = max((change.change for _, change in members), key=abs)
+        way = "" if len(members) == 1 else " up to" if rises else " down to"
+        words.append(f"{name}{way} {millivolts(most)} in {named([lead for lead, _ in members])}")
+    return "; ".join(words)
+
+
+def next_step(by_code: Mapping[str, Collection[str]]) -> str:
+    """What to do next, by the leads of each judgement."""
     if by_code.get("beyond-reach"):
         return (
             "Next: read it as a change of the heart until shown otherwise; record again with the "
@@ -183,10 +192,6 @@ def next_step(by_code: Mapping[str, Sequence[str]]) -> str:
     return "Next: check the electrodes and record again."
 
 
-def _size(m: Deciding) -> str:
-    return f"largest {m.name} {millivolts(m.change)}"
-
-
 _SITE_OF = {
     "V1": "V1 in the fourth space at the right sternal border",
     "V2": "V2 in the fourth space at the left sternal border",
@@ -197,7 +202,7 @@ _SITE_OF = {
 }
 
 
-def _sites(leads: Sequence[str]) -> str:
+def _sites(leads: Collection[str]) -> str:
     """The sites to check; V1 and V2 share one phrase."""
     sites = [_SITE_OF[lead] for lead in leads if lead in _SITE_OF]
     if "V1" in leads and "V2" in leads:

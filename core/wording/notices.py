@@ -5,13 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from core.notices import Notice
-
-
-def joined(items: Sequence[str]) -> str:
-    """``"V1"``, ``"V1 and V2"``, ``"V1, V2 and V3"``."""
-    if len(items) < 2:
-        return "".join(items)
-    return f"{', '.join(items[:-1])} and {items[-1]}"
+from core.wording.lists import joined
 
 
 def limb_leads_derived(derived: Sequence[str]) -> Notice:

@@ -11,6 +11,7 @@ from datetime import datetime
 import numpy as np
 from numpy.typing import NDArray
 
+from core.comparison.bands import change_bands
 from core.comparison.gate import pair_notices
 from core.comparison.judge import (
     BACKED,
@@ -42,7 +43,7 @@ from core.placement.estimate import ShiftPosterior, estimate_shifts
 from core.placement.expected import Expected, expected_changes, tail_probability
 from core.placement.foretell import INDEPENDENT_ROWS
 from core.placement.moved import usable_independent, ventricular_beat_mv
-from core.placement.person import weigh_ensemble
+from core.placement.person import Person, weigh_ensemble
 from core.placement.reach import Reach, placement_reach
 from core.recordings.leads import CHEST_LEADS, LIMB_LEADS, TWELVE_LEADS
 from core.recordings.recording import Recording
@@ -139,6 +140,7 @@ def compare(
         tail_probability=tail_probability(expected, change, DECIDING, rows),
         model_name=MODEL_NAME,
         model_version=ensemble.version,
+        sites_mm=_mean_sites(person),
     )
     step(1.0, "done")
     return Comparison(
@@ -147,12 +149,21 @@ def compare(
         earlier=first,
         later=second,
         laid=laid,
+        bands=change_bands(first, noise, reach, expected, settings),
         beat_pairs=pairs,
         leads=leads,
         placement=placement,
         overall=_overall(leads, placement),
         notices=pair_notices(first, second),
     )
+
+
+def _mean_sites(person: Person) -> dict[str, tuple[float, float]]:
+    sites = person.ensemble.sites_mm[[variant.index for variant in person.variants]]
+    mean = np.tensordot(person.weights, sites, axes=1)
+    return {
+        lead: (float(left), float(up)) for lead, (left, up) in zip(CHEST_LEADS, mean, strict=True)
+    }
 
 
 def _shift_of(posterior: ShiftPosterior, confidence: float) -> ElectrodeShift:

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from datetime import datetime
 from typing import Any
 
+from core.comparison.bands import Bands
 from core.comparison.laid import LaidBeats
 from core.comparison.pairing import BeatPair
 from core.json_numbers import number_or_none
@@ -105,6 +106,9 @@ class Placement:
     tail_probability: float | None
     model_name: str
     model_version: str
+    # Skin coordinates (left of the midline, above the fourth space) where V1 to V6 belong on
+    # the trunks that fit this person, for drawing.
+    sites_mm: dict[str, tuple[float, float]] = field(default_factory=dict)
 
     def to_dict(self) -> dict[str, Any]:
         """The placement as JSON writes it."""
@@ -144,6 +148,7 @@ class Comparison:
     earlier: RecordingReport
     later: RecordingReport
     laid: LaidBeats
+    bands: Bands
     beat_pairs: tuple[BeatPair, ...]
     leads: dict[str, LeadComparison]
     placement: Placement

@@ -27,10 +27,13 @@ class Expected:
         Mean foretold change; 0 in limb leads.
     draws : dict of measure to ndarray, shape (12, n_draws)
         Foretold changes with all that is uncertain in them, the repeat noise included.
+    gain : dict of chest lead to ndarray, shape (8,)
+        Mean gain of the drawn shifts.
     """
 
     change: dict[str, NDArray[np.float64]]
     draws: dict[str, NDArray[np.float64]]
+    gain: dict[str, NDArray[np.float64]]
 
 
 def expected_changes(
@@ -57,16 +60,18 @@ def expected_changes(
         name: np.nan_to_num(noise[name] / z)[:, None] * rng.normal(size=(12, n))
         for name in COMPARED
     }
+    gain = {}
     for electrode, lead in enumerate(CHEST_LEADS):
         row = TWELVE_LEADS.index(lead)
         foretold = foretell_measures(person, report, electrode, shifts[lead].draw(n, rng))
+        gain[lead] = foretold.gain.mean(axis=0)
         for name in COMPARED:
             known = foretold.change[name]
             known = known[~np.isnan(known)]
             change[name][row] = known.mean() if known.size else np.nan
             draws[name][row] += foretold.change[name]
             draws[name][row] += foretold.model_sd[name] * rng.normal(size=n)
-    return Expected(change, draws)
+    return Expected(change, draws, gain)
 
 
 def tail_probability(

@@ -42,10 +42,13 @@ class Foretold:
         NaN where the moved lead lacks the wave.
     model_sd : dict of measure to ndarray, shape (n,)
         Standard deviation of what the model doesn't know of that change.
+    gain : ndarray, shape (n, 8)
+        Change of the lead at every instant = gain @ the eight leads.
     """
 
     change: dict[str, NDArray[np.float64]]
     model_sd: dict[str, NDArray[np.float64]]
+    gain: NDArray[np.float64]
 
 
 def foretell_measures(
@@ -87,7 +90,7 @@ def foretell_measures(
     cut = points.starting_at(start)
     moved = measure_lead_values(beat[lead] + gain @ beat, cut)
     unmoved = measure_lead_values(beat[lead], cut)
-    return Foretold({name: moved[name] - unmoved[name] for name in COMPARED}, model_sd)
+    return Foretold({name: moved[name] - unmoved[name] for name in COMPARED}, model_sd, gain)
 
 
 def _anchor_vectors(report: RecordingReport, electrode: int) -> dict[str, NDArray[np.float64]]:

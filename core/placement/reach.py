@@ -19,10 +19,18 @@ from core.settings import Settings
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Reach:
-    """Range of each measure's change by placement and repeat noise, arrays of shape (12,)."""
+    """Range of each measure's change by placement and repeat noise.
+
+    Attributes
+    ----------
+    low, high : dict of measure to ndarray, shape (12,)
+    gain : dict of chest lead to ndarray, shape (n_draws, 8)
+        Gains of the drawn shifts.
+    """
 
     low: dict[str, NDArray[np.float64]]
     high: dict[str, NDArray[np.float64]]
+    gain: dict[str, NDArray[np.float64]]
 
 
 def draw_shifts(person: Person, settings: Settings, rng: np.random.Generator) -> Displacements:
@@ -63,9 +71,11 @@ def placement_reach(
     low = {name: -noise[name] for name in COMPARED}
     high = {name: noise[name].copy() for name in COMPARED}
     tail = (1.0 - settings.confidence) / 2
+    gain = {}
     for electrode, lead in enumerate(CHEST_LEADS):
         draws = draw_shifts(person, settings, rng)
         foretold = foretell_measures(person, report, electrode, draws)
+        gain[lead] = foretold.gain
         row = TWELVE_LEADS.index(lead)
         for name in COMPARED:
             sd = np.hypot(foretold.model_sd[name], noise[name][row] / z)
@@ -77,4 +87,4 @@ def placement_reach(
             bounds = np.quantile(known, [tail, 1.0 - tail])
             low[name][row] = min(low[name][row], bounds[0])
             high[name][row] = max(high[name][row], bounds[1])
-    return Reach(low, high)
+    return Reach(low, high, gain)

@@ -1,0 +1,1 @@
+"""Samespot's command line, workstation and report."""

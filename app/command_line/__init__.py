@@ -1,0 +1,1 @@
+"""The command ``samespot``: one module a command, errors to exit statuses."""

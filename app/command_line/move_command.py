@@ -1,0 +1,88 @@
+"""``samespot move RECORDING --electrode V2 --up-mm 24 --out STEM``."""
+
+from __future__ import annotations
+
+import argparse
+from collections.abc import Sequence
+from pathlib import Path
+from typing import Any
+
+from app.command_line.failures import CommandFailed
+from app.command_line.outputs import say
+from core import ElectrodeMove, move_electrodes, read_recording
+from core.recordings.leads import CHEST_LEADS
+from core.recordings.wfdb_writer import write_wfdb
+
+
+class _StartMove(argparse.Action):
+    """``--electrode`` starts a group."""
+
+    def __call__(
+        self,
+        parser: argparse.ArgumentParser,
+        namespace: argparse.Namespace,
+        values: str | Sequence[Any] | None,
+        option_string: str | None = None,
+    ) -> None:
+        moves = [*(namespace.moves or []), {"electrode": values}]
+        namespace.moves = moves
+
+
+class _SetInMove(argparse.Action):
+    """``--up-mm`` and ``--left-mm`` belong to the group that is open."""
+
+    def __call__(
+        self,
+        parser: argparse.ArgumentParser,
+        namespace: argparse.Namespace,
+        values: str | Sequence[Any] | None,
+        option_string: str | None = None,
+    ) -> None:
+        if not namespace.moves:
+            parser.error(f"{option_string} must follow an --electrode")
+        namespace.moves[-1][self.dest] = values
+
+
+def add_to(commands: Any) -> None:
+    """Add the command to the parser."""
+    parser = commands.add_parser(
+        "move", help="write the tracing that the person would have given with electrodes moved"
+    )
+    parser.add_argument("recording", metavar="RECORDING", help="a file or a WFDB record name")
+    parser.add_argument(
+        "--electrode",
+        dest="moves",
+        action=_StartMove,
+        choices=CHEST_LEADS,
+        required=True,
+        help="starts a group; several may follow each other",
+    )
+    parser.add_argument(
+        "--up-mm", action=_SetInMove, type=float, metavar="N", help="towards the head"
+    )
+    parser.add_argument(
+        "--left-mm", action=_SetInMove, type=float, metavar="N", help="towards the patient's left"
+    )
+    parser.add_argument(
+        "--out", metavar="STEM", required=True, help="WFDB record to write, without an ending"
+    )
+    parser.set_defaults(run=run)
+
+
+def run(options: argparse.Namespace) -> None:
+    """Foretell the moved tracing and write it as a WFDB record."""
+    try:
+        moves = [ElectrodeMove(**move) for move in options.moves]
+        moved = move_electrodes(read_recording(options.recording), moves)
+    except ValueError as error:
+        if type(error) is not ValueError:  # a RecordingError speaks for itself
+            raise
+        raise CommandFailed(f"{error}.") from error
+    stem = Path(options.out)
+    try:
+        header, _ = write_wfdb(moved, stem)
+    except OSError as error:
+        raise CommandFailed(
+            f"{stem}: cannot be written ({error.strerror or error}). Choose another folder."
+        ) from error
+    say(f"wrote {header.name} beside its signal file")

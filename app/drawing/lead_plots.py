@@ -1,0 +1,170 @@
+"""A lead's two representative beats on each other, and their difference."""
+
+from __future__ import annotations
+
+import numpy as np
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QPainter, QPen
+
+from app.drawing.pen import Style, draw_curve, draw_mark, draw_text, fill_between, text_width
+from app.drawing.scale import Scale, voltage_range
+from core.comparison.results import Comparison
+from core.recordings.leads import TWELVE_LEADS
+from core.wording.judgements import WORDS
+from core.wording.numbers import NARROW, signed
+
+SMALL_SQUARE_MS, SMALL_SQUARE_MV = 40.0, 0.1
+LEAST_HEIGHT_MV = 0.9
+RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+CENTRE = Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignVCenter
+
+
+def shown_times_ms(comparison: Comparison) -> tuple[float, float]:
+    """Stretch of the beat that is shown: a little before P to a little after T."""
+    f, time = comparison.earlier.points.fiducials, comparison.laid.time_ms
+    first = time[f.p_onset] - 40.0 if f.p_onset is not None else time[f.qrs_onset] - 120.0
+    return max(float(first), float(time[0])), min(float(time[f.t_offset]) + 60.0, float(time[-1]))
+
+
+def draw_grid(painter: QPainter, scale: Scale, style: Style, *, every: int = 1) -> None:
+    """ECG paper: lines each 40 ms and 0.1 mV (or each *every* of them), 0 mV stronger."""
+    palette, unit = style.palette, style.unit
+    painter.setPen(QPen(palette.colour("grid"), 0.8 * unit))
+    step_ms, step_mv = SMALL_SQUARE_MS * every, SMALL_SQUARE_MV * every
+    for time in np.arange(np.ceil(scale.first_ms / step_ms), scale.last_ms / step_ms) * step_ms:
+        x = float(scale.x(time))
+        painter.drawLine(QPointF(x, scale.rect.top()), QPointF(x, scale.rect.bottom()))
+    for level in np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv:
+        y = float(scale.y(level))
+        painter.drawLine(QPointF(scale.rect.left(), y), QPointF(scale.rect.right(), y))
+    painter.setPen(QPen(palette.colour("line"), unit))
+    zero = float(scale.y(0.0))
+    painter.drawLine(QPointF(scale.rect.left(), zero), QPointF(scale.rect.right(), zero))
+
+
+def draw_overlay(
+    painter: QPainter, rect: QRectF, comparison: Comparison, lead: str, style: Style, *, every: int
+) -> Scale:
+    """Both beats, with the noise and reach bands around the earlier one."""
+    row = TWELVE_LEADS.index(lead)
+    laid, bands, palette = comparison.laid, comparison.bands, style.palette
+    first, last = shown_times_ms(comparison)
+    shown = (laid.time_ms >= first) & (laid.time_ms <= last)
+    time = laid.time_ms[shown]
+    earlier, later = laid.earlier_mv[row, shown], laid.later_mv[row, shown]
+    reach = (earlier + bands.reach_low_mv[row, shown], earlier + bands.reach_high_mv[row, shown])
+    low, high = voltage_range(earlier, later, *reach, least_mv=LEAST_HEIGHT_MV)
+    scale = Scale(rect, first, last, low, high)
+    painter.save()
+    painter.setClipRect(rect)
+    draw_grid(painter, scale, style, every=every)
+    x = scale.x(time)
+    fill_between(painter, x, scale.y(reach[0]), scale.y(reach[1]), palette.band("reach"))
+    noise = bands.noise_mv[row, shown]
+    fill_between(
+        painter, x, scale.y(earlier - noise), scale.y(earlier + noise), palette.band("noise")
+    )
+    draw_curve(painter, x, scale.y(earlier), palette.colour("earlier"), 1.6 * style.unit)
+    draw_curve(painter, x, scale.y(later), palette.colour("later"), 1.6 * style.unit)
+    painter.restore()
+    return scale
+
+
+def draw_lead_cell(
+    painter: QPainter,
+    rect: QRectF,
+    comparison: Comparison,
+    lead: str,
+    style: Style,
+    *,
+    selected: bool = False,
+) -> None:
+    """One cell of the lead wall: name, judgement, overlay, change of ST and T."""
+    palette, unit = style.palette, style.unit
+    result = comparison.leads[lead]
+    border = QPen(
+        palette.colour("selection" if selected else "line"), (2 if selected else 1) * unit
+    )
+    painter.setPen(border)
+    painter.setBrush(palette.colour("card"))
+    painter.drawRect(rect.adjusted(unit, unit, -unit, -unit))
+
+    inside = rect.adjusted(9 * unit, 6 * unit, -9 * unit, -6 * unit)
+    line = style.body * 1.45
+    top = QRectF(inside.left(), inside.top(), inside.width(), line)
+    name_font, word_font = style.font(style.body, bold=True), style.font(style.caption)
+    draw_text(painter, top, lead, name_font, palette.colour("ink"))
+    colour = palette.judgement(result.judgement)
+    word = WORDS[result.judgement]
+    draw_text(painter, top, word, word_font, colour, RIGHT)
+    mark_at = QPointF(top.right() - text_width(word, word_font) - 9 * unit, top.center().y())
+    draw_mark(painter, mark_at, style.caption * 0.72, result.judgement, colour)
+
+    foot = QRectF(inside.left(), inside.bottom() - line, inside.width(), line)
+    draw_text(
+        painter, foot, _changes(comparison, lead), word_font, palette.colour("soft_ink"), RIGHT
+    )
+    plot = QRectF(inside.left(), top.bottom(), inside.width(), foot.top() - top.bottom())
+    draw_overlay(painter, plot, comparison, lead, style, every=5)
+
+
+def _changes(comparison: Comparison, lead: str) -> str:
+    measures = comparison.leads[lead].measures
+    st, t = measures["st_mv"].change, measures["t_mv"].change
+    return f"ST{NARROW}{signed(st)} · T{NARROW}{signed(t)}{NARROW}mV"
+
+
+def draw_difference(
+    painter: QPainter, rect: QRectF, comparison: Comparison, lead: str, style: Style
+) -> Scale:
+    """Later less earlier, in the bands of noise and reach, and what the shift would make."""
+    row = TWELVE_LEADS.index(lead)
+    laid, bands, palette = comparison.laid, comparison.bands, style.palette
+    first, last = shown_times_ms(comparison)
+    shown = (laid.time_ms >= first) & (laid.time_ms <= last)
+    change = (laid.later_mv - laid.earlier_mv)[row, shown]
+    reach = bands.reach_low_mv[row, shown], bands.reach_high_mv[row, shown]
+    low, high = voltage_range(change, *reach, least_mv=0.3)
+    scale = Scale(rect, first, last, low, high)
+    painter.save()
+    painter.setClipRect(rect)
+    draw_grid(painter, scale, style, every=5)
+    x = scale.x(laid.time_ms[shown])
+    noise = bands.noise_mv[row, shown]
+    fill_between(painter, x, scale.y(reach[0]), scale.y(reach[1]), palette.band("reach"))
+    fill_between(painter, x, scale.y(-noise), scale.y(noise), palette.band("noise"))
+    draw_curve(painter, x, scale.y(change), palette.colour("ink"), 1.6 * style.unit)
+    draw_curve(
+        painter,
+        x,
+        scale.y(bands.expected_mv[row, shown]),
+        palette.colour("in_reach"),
+        1.6 * style.unit,
+        Qt.PenStyle.DashLine,
+    )
+    painter.restore()
+    return scale
+
+
+def draw_fiducials(
+    painter: QPainter, scale: Scale, comparison: Comparison, style: Style, label_rect: QRectF
+) -> None:
+    """Upright lines at the QRS onset, J, the ST point and the end of T, named above the plot."""
+    points, time = comparison.earlier.points, comparison.laid.time_ms
+    st_name = f"J+{comparison.settings.st_point_ms:g}"
+    marks = [
+        (points.fiducials.qrs_onset, "QRS on", RIGHT),
+        (points.j, "J", RIGHT),
+        (points.st, st_name, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter),
+        (points.fiducials.t_offset, "T end", CENTRE),
+    ]
+    font, palette = style.font(style.caption), style.palette
+    for sample, name, align in marks:
+        x = float(scale.x(time[min(sample, time.size - 1)]))
+        painter.setPen(QPen(palette.colour("soft_ink"), 0.9 * style.unit, Qt.PenStyle.DashLine))
+        painter.drawLine(QPointF(x, scale.rect.top()), QPointF(x, scale.rect.bottom()))
+        width = text_width(name, font) + 2 * style.unit
+        left = {RIGHT: x - width, CENTRE: x - width / 2}.get(align, x)
+        left = min(max(left, label_rect.left()), label_rect.right() - width)
+        box = QRectF(left, label_rect.top(), width, label_rect.height())
+        draw_text(painter, box, name, font, palette.colour("soft_ink"), CENTRE)

@@ -1,0 +1,291 @@
+"""The comparison report: one page that answers, one of evidence."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRectF, Qt
+from PySide6.QtGui import QPageLayout, QPageSize, QPainter, QPdfWriter, QPen
+
+from app.drawing.chest_map import draw_chest_map
+from app.drawing.lead_plots import draw_lead_cell
+from app.drawing.pen import draw_mark, draw_paragraph, draw_text
+from app.report.page import Page, mm, start_page
+from app.report.tables import Column, draw_table
+from core.comparison.results import Comparison
+from core.measures.report import RecordingReport
+from core.recordings.leads import TWELVE_LEADS
+from core.version import PROGRAM_NAME, program_version
+from core.wording.caution import KNOWN_LIMITS
+from core.wording.judgements import MEANINGS, WORDS
+from core.wording.numbers import plain, signed, signed_range
+from core.wording.recordings import beats_used, key_numbers, person, when
+
+TITLE = "ECG comparison report"
+RESOLUTION_DPI = 1200
+N_PAGES = 2
+
+
+def write_report(comparison: Comparison) -> bytes:
+    """The report as the bytes of a PDF. Needs a QGuiApplication."""
+    buffer = QBuffer()
+    buffer.open(QIODevice.OpenModeFlag.WriteOnly)
+    writer = QPdfWriter(buffer)
+    writer.setResolution(RESOLUTION_DPI)
+    writer.setTitle(TITLE)
+    writer.setCreator(f"{PROGRAM_NAME} {program_version()}")
+    layout = QPageLayout(
+        QPageSize(QPageSize.PageSizeId.A4), QPageLayout.Orientation.Portrait, QMarginsF()
+    )
+    layout.setMode(QPageLayout.Mode.FullPageMode)
+    writer.setPageLayout(layout)
+    painter = QPainter(writer)
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    try:
+        _answer_page(start_page(writer, painter, first=True), comparison)
+        _evidence_page(start_page(writer, painter, first=False), comparison)
+    finally:
+        painter.end()
+    buffer.close()
+    return bytes(buffer.data().data())
+
+
+def _made(comparison: Comparison) -> str:
+    made_at = when(comparison.made_at)
+    model = comparison.placement
+    return (
+        f"{PROGRAM_NAME} {program_version()} · {model.model_name} {model.model_version} · "
+        f"made {made_at}"
+    )
+
+
+def _answer_page(page: Page, comparison: Comparison) -> None:
+    page.foot(1, N_PAGES, _made(comparison))
+    _title(page)
+    _recordings(page, comparison)
+    _verdict(page, comparison)
+    page.heading("Representative beats")
+    _wall(page, comparison)
+    _legend(page)
+    for notice in comparison.notices[:8]:
+        page.paragraph(f"{notice.severity.capitalize()}: {notice.text}", gap=0.6)
+    rest = len(comparison.notices) - 8
+    if rest > 0:
+        page.paragraph(f"and {rest} more in the JSON of this comparison.", gap=0.6)
+
+
+def _title(page: Page) -> None:
+    strip = page.take(page.style.heading * 1.6, mm(1.5))
+    font = page.style.font(page.style.heading * 1.25, bold=True)
+    draw_text(page.painter, strip, TITLE, font, page.style.palette.colour("ink"))
+
+
+def _recordings(page: Page, comparison: Comparison) -> None:
+    height, gap = mm(25.0), mm(4.0)
+    strip = page.take(height, mm(2.5))
+    width = (strip.width() - gap) / 2
+    for place, (role, name, report) in enumerate(
+        (("earlier", "Earlier", comparison.earlier), ("later", "Later", comparison.later))
+    ):
+        card = QRectF(strip.left() + place * (width + gap), strip.top(), width, height)
+        _recording_card(page, card, role, name, report)
+
+
+def _recording_card(
+    page: Page, card: QRectF, role: str, name: str, report: RecordingReport
+) -> None:
+    style, painter = page.style, page.painter
+    palette = style.palette
+    painter.setPen(QPen(palette.colour("line"), mm(0.25)))
+    painter.setBrush(Qt.BrushStyle.NoBrush)
+    painter.drawRect(card)
+    painter.fillRect(QRectF(card.left(), card.top(), mm(1.2), card.height()), palette.colour(role))
+    recording, subject = report.recording, report.recording.subject
+    title = style.font(style.body * 1.1, bold=True)
+    line = QRectF(card.left() + mm(3.5), card.top() + mm(1.2), card.width() - mm(5), mm(4.4))
+    draw_text(painter, line, name, title, palette.colour(role))
+    after_name = line.adjusted(mm(16), 0, 0, 0)
+    draw_text(painter, after_name, when(recording.recorded_at), title, palette.colour("ink"))
+    lines = [
+        person(subject.name, subject.id, subject.sex, subject.age_years),
+        key_numbers(report.heart_rate_per_min, report.pr_ms, report.qrs_ms, report.qtc_ms),
+        f"{beats_used(len(report.analysis.used), len(report.analysis.beats))} · "
+        f"{plain(recording.duration_s, 1)} s at {recording.sampling_rate_hz:g} Hz",
+        f"{recording.source.name} ({recording.source.format}) · "
+        f"SHA-256 {recording.source.sha256[:16]}…",
+    ]
+    font = style.font(style.body)
+    for text in lines:
+        line.translate(0, mm(4.6))
+        draw_text(painter, line, text, font, palette.colour("ink"))
+
+
+def _verdict(page: Page, comparison: Comparison) -> None:
+    style, painter = page.style, page.painter
+    overall, palette = comparison.overall, page.style.palette
+    inside_left = page.left + mm(9.0)
+    width = page.inner_width - mm(12.0)
+    top = page.top
+    heading = style.font(style.heading, bold=True)
+    rect = QRectF(inside_left, top + mm(2.0), width, 0.0)
+    used = draw_paragraph(painter, rect, overall.sentence, heading, palette.colour("ink"))
+    rect.translate(0, used + mm(1.0))
+    used += draw_paragraph(
+        painter, rect, overall.next_step, style.font(style.body * 1.1), palette.colour("ink")
+    )
+    box = QRectF(page.left, top, page.inner_width, used + mm(5.0))
+    painter.setPen(QPen(palette.judgement(overall.judgement), mm(0.4)))
+    painter.setBrush(Qt.BrushStyle.NoBrush)
+    painter.drawRect(box)
+    at = QPointF(page.left + mm(4.6), top + mm(2.0) + style.heading * 0.62)
+    draw_mark(painter, at, mm(3.2), overall.judgement, palette.judgement(overall.judgement))
+    page.top = box.bottom() + mm(3.0)
+
+
+def _wall(page: Page, comparison: Comparison) -> None:
+    columns, gap = 4, mm(1.5)
+    cell_height = mm(36.0)
+    strip = page.take(3 * cell_height + 2 * gap, mm(1.2))
+    width = (strip.width() - (columns - 1) * gap) / columns
+    for index, lead in enumerate(TWELVE_LEADS):
+        # Down the columns, as leads stand on a printed sheet.
+        column, row = divmod(index, 3)
+        cell = QRectF(
+            strip.left() + column * (width + gap),
+            strip.top() + row * (cell_height + gap),
+            width,
+            cell_height,
+        )
+        draw_lead_cell(page.painter, cell, comparison, lead, page.style)
+
+
+def _legend(page: Page) -> None:
+    """What the colours of the wall mean."""
+    style, painter, palette = page.style, page.painter, page.style.palette
+    strip = page.take(style.caption * 1.5, mm(2.0))
+    font = style.font(style.caption)
+    items = (
+        ("earlier", "earlier beat"),
+        ("later", "later beat"),
+        ("noise", "repeat noise, 95 %"),
+        ("reach", "placement reach, 95 %"),
+    )
+    x = strip.left()
+    middle = strip.center().y()
+    for role, text in items:
+        if role in ("noise", "reach"):
+            painter.fillRect(QRectF(x, middle - mm(1.0), mm(6), mm(2.0)), palette.band(role))
+        else:
+            painter.setPen(QPen(palette.colour(role), mm(0.45)))
+            painter.drawLine(QPointF(x, middle), QPointF(x + mm(6), middle))
+        box = QRectF(x + mm(7), strip.top(), mm(36), strip.height())
+        draw_text(painter, box, text, font, palette.colour("soft_ink"))
+        x += mm(38)
+    box = QRectF(x, strip.top(), strip.right() - x, strip.height())
+    draw_text(painter, box, "grid 0.2 s × 0.5 mV", font, palette.colour("soft_ink"))
+
+
+def _evidence_page(page: Page, comparison: Comparison) -> None:
+    page.foot(2, N_PAGES, _made(comparison))
+    page.heading("Changes of ST and T, in mV")
+    _changes_table(page, comparison)
+    page.heading("Electrodes of the later recording against the earlier, by the QRS")
+    _placement(page, comparison)
+    page.heading("What the words mean")
+    for code, meaning in MEANINGS.items():
+        page.paragraph(f"{WORDS[code].capitalize()}: {meaning}", gap=0.4)
+    page.top += mm(1.5)
+    page.heading("How it was made")
+    page.paragraph(_method(comparison), gap=0.8)
+    page.paragraph(KNOWN_LIMITS)
+
+
+def _changes_table(page: Page, comparison: Comparison) -> None:
+    columns = [
+        Column("lead", 8.5),
+        Column("judgement", 31.0),
+        *[
+            Column(what, width, right=True, group=name)
+            for name in ("ST", "T")
+            for what, width in (
+                ("later", 12.5),
+                ("change", 12.5),
+                ("noise ±", 11.5),
+                ("reach", 20.5),
+                ("remainder", 14.0),
+            )
+        ],
+    ]
+    rows: list[tuple[str | None, list[str]]] = []
+    for lead, result in comparison.leads.items():
+        cells = [lead, WORDS[result.judgement]]
+        for name in ("st_mv", "t_mv"):
+            m = result.measures[name]
+            cells += [
+                signed(m.later),
+                signed(m.change),
+                plain(m.noise_high, 2),
+                signed_range(m.reach_low, m.reach_high),
+                signed(m.remainder),
+            ]
+        rows.append((result.judgement, cells))
+    draw_table(page, columns, rows)
+
+
+def _placement(page: Page, comparison: Comparison) -> None:
+    style, painter = page.style, page.painter
+    strip = page.take(mm(62.0), mm(3.0))
+    map_rect = QRectF(strip.left(), strip.top(), strip.width() * 0.56, strip.height())
+    draw_chest_map(painter, map_rect, comparison, style)
+    side = Page(painter, style, page.width, page.height, strip.top())
+    columns = [
+        Column("electrode", 16.0),
+        Column("up, mm (95 %)", 29.0, right=True),
+        Column("left, mm (95 %)", 29.0, right=True),
+    ]
+    rows: list[tuple[str | None, list[str]]] = []
+    for electrode, shift in comparison.placement.electrodes.items():
+        if shift is None:
+            rows.append(("not-judged", [electrode, "not judged", ""]))
+            continue
+        cells = [
+            f"{signed(size.estimate, 0)} ({signed_range(size.low, size.high, 0)})"
+            for size in (shift.up_mm, shift.left_mm)
+        ]
+        rows.append((None, [electrode, *cells]))
+    draw_table(side, columns, rows, left=map_rect.right() + mm(2.0))
+    tail = comparison.placement.tail_probability
+    text = (
+        "Open ring: where the electrode belongs. Disc: estimate for the later recording, where "
+        "the QRS points to a shift; ellipse: 95 % range."
+    )
+    if tail is not None:
+        text += (
+            " Placement and repeat noise alone give changes at least this unusual in "
+            f"{_share(tail)} of cases."
+        )
+    note = QRectF(map_rect.right() + mm(2.0), side.top, strip.right() - map_rect.right() - mm(2), 0)
+    draw_paragraph(painter, note, text, style.font(style.caption), style.palette.colour("soft_ink"))
+
+
+def _share(probability: float) -> str:
+    percent = 100.0 * probability
+    return (
+        "under 0.1 %"
+        if percent < 0.1
+        else f"{percent:.1f} %"
+        if percent < 10
+        else f"{percent:.0f} %"
+    )
+
+
+def _method(comparison: Comparison) -> str:
+    settings = comparison.settings
+    return (
+        f"ST is read {settings.st_point_ms:g} ms after J against the level just before the QRS, on "
+        "a representative beat (trimmed mean of aligned beats). Repeat noise joins the spread of "
+        "the beats and published day-to-day variability. Placement reach: "
+        f"{settings.draws} draws of electrode shifts with a spread of "
+        f"{settings.spread_mm.up:g} mm up and {settings.spread_mm.left:g} mm left in each "
+        "recording, foretold by a boundary-element torso ensemble weighed by this person's own "
+        "leads. The shift is estimated from the QRS alone; ST and T never enter it. Chest "
+        f"electrode shifts cannot change a limb lead. Ranges hold {100 * settings.confidence:g} %."
+    )

@@ -5,6 +5,7 @@ The skin of the chest laid flat: distances along it are true in every direction.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 from PySide6.QtCore import QPointF, QRectF, Qt
@@ -13,7 +14,7 @@ from PySide6.QtGui import QPainter, QPen
 from app.drawing.lead_plots import CENTRE
 from app.drawing.pen import Style, draw_text, text_width
 from core.comparison.results import Comparison, ElectrodeShift
-from core.wording.numbers import plain, signed
+from core.wording.numbers import plain
 
 LEFT_MARGIN_MM, RIGHT_MARGIN_MM = 62.0, 40.0
 LOWEST_MM, HIGHEST_MM = -95.0, 100.0
@@ -21,7 +22,6 @@ SCALE_BAR_MM = 50.0
 STERNUM_HALF_MM = 18.0
 INTERSPACE_MM = 29.0
 RADIUS = 5.5
-LEAST_NAMED_MM = 12.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,9 +56,10 @@ def draw_chest_map(
     painter.save()
     painter.setClipRect(rect)
     _draw_landmarks(painter, layout, sites, style)
+    labels: list[QRectF] = []
     for electrode, site in sites.items():
         shift = comparison.placement.electrodes.get(electrode)
-        _draw_electrode(painter, layout, electrode, site, shift, style)
+        _draw_electrode(painter, layout, electrode, site, shift, style, labels)
         if electrode == selected:
             _ring(painter, layout.at(*site), style)
     _draw_scale_bar(painter, rect, scale, style)
@@ -103,12 +104,12 @@ def _draw_electrode(
     site: tuple[float, float],
     shift: ElectrodeShift | None,
     style: Style,
+    labels: list[QRectF],
 ) -> None:
     palette, unit, at = style.palette, style.unit, layout.at
     here = at(*site)
     radius = RADIUS * unit
-    moved = shift is not None and shift.qrs_points_to_shift
-    if moved and shift is not None:
+    if shift is not None and shift.worth_naming():
         there = at(site[0] + shift.left_mm.estimate, site[1] + shift.up_mm.estimate)
         middle = at(
             site[0] + (shift.left_mm.low + shift.left_mm.high) / 2,
@@ -129,7 +130,7 @@ def _draw_electrode(
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(later)
         painter.drawEllipse(there, radius * 0.85, radius * 0.85)
-        _name_shift(painter, there, shift, style)
+        _name_shift(painter, there, shift, style, labels)
     painter.setPen(QPen(palette.colour("earlier"), 2.0 * unit))
     painter.setBrush(palette.colour("card"))
     painter.drawEllipse(here, radius, radius)
@@ -139,22 +140,24 @@ def _draw_electrode(
     draw_text(painter, box, electrode, font, palette.colour("ink"), CENTRE)
 
 
-def _name_shift(painter: QPainter, there: QPointF, shift: ElectrodeShift, style: Style) -> None:
-    """How far, beside the disc, in the direction that is certain."""
-    words = [
-        f"{signed(size.estimate, 0)} mm {name}"
-        for name, size in (("up", shift.up_mm), ("left", shift.left_mm))
-        if (size.low > 0 or size.high < 0) and abs(size.estimate) >= LEAST_NAMED_MM
-    ]
-    if not words:
-        return
+def _name_shift(
+    painter: QPainter,
+    there: QPointF,
+    shift: ElectrodeShift,
+    style: Style,
+    labels: list[QRectF],
+) -> None:
+    """How far, over the disc and clear of the labels that stand already."""
+    certain = shift.worth_naming().values()
+    text = f"{plain(math.hypot(*(size.estimate for size in certain)))} mm"
     font = style.font(style.caption, bold=True)
-    width = max(text_width(word, font) for word in words) + 4 * style.unit
-    height = style.caption * 1.3
-    top = there.y() - (RADIUS + 3) * style.unit - height * len(words)
-    for line, word in enumerate(words):
-        box = QRectF(there.x() - width / 2, top + line * height, width, height)
-        draw_text(painter, box, word, font, style.palette.colour("later"), CENTRE)
+    width, height = text_width(text, font) + 4 * style.unit, style.caption * 1.3
+    top = there.y() - (RADIUS + 3) * style.unit - height
+    box = QRectF(there.x() - width / 2, top, width, height)
+    while any(box.intersects(label) for label in labels):
+        box.translate(0, -height)
+    labels.append(box)
+    draw_text(painter, box, text, font, style.palette.colour("later"), CENTRE)
 
 
 def _ring(painter: QPainter, at: QPointF, style: Style) -> None:

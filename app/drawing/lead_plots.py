@@ -96,22 +96,37 @@ def draw_lead_cell(
     draw_text(painter, top, lead, name_font, palette.colour("ink"))
     colour = palette.judgement(result.judgement)
     word = WORDS[result.judgement]
+    needed = text_width(word, word_font) + style.caption * 1.4
+    if needed + text_width(lead, name_font) > inside.width():
+        # No room beside the name: the word gets a line of its own.
+        top.translate(0, style.caption * 1.3)
     draw_text(painter, top, word, word_font, colour, RIGHT)
     mark_at = QPointF(top.right() - text_width(word, word_font) - 9 * unit, top.center().y())
     draw_mark(painter, mark_at, style.caption * 0.72, result.judgement, colour)
 
     foot = QRectF(inside.left(), inside.bottom() - line, inside.width(), line)
-    draw_text(
-        painter, foot, _changes(comparison, lead), word_font, palette.colour("soft_ink"), RIGHT
+    changes = next(
+        (
+            text
+            for text in _changes(comparison, lead)
+            if text_width(text, word_font) <= foot.width()
+        ),
+        "",
     )
+    draw_text(painter, foot, changes, word_font, palette.colour("soft_ink"), RIGHT)
     plot = QRectF(inside.left(), top.bottom(), inside.width(), foot.top() - top.bottom())
     draw_overlay(painter, plot, comparison, lead, style, every=5)
 
 
-def _changes(comparison: Comparison, lead: str) -> str:
+def _changes(comparison: Comparison, lead: str) -> list[str]:
+    """The changes of ST and T in words, from the longest to the shortest way to say them."""
     measures = comparison.leads[lead].measures
-    st, t = measures["st_mv"].change, measures["t_mv"].change
-    return f"ST{NARROW}{signed(st)} · T{NARROW}{signed(t)}{NARROW}mV"
+    st, t = signed(measures["st_mv"].change), signed(measures["t_mv"].change)
+    return [
+        f"ST{NARROW}{st} · T{NARROW}{t}{NARROW}mV",
+        f"ST{NARROW}{st} · T{NARROW}{t}",
+        f"ST{st} T{t}",
+    ]
 
 
 def draw_difference(

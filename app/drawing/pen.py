@@ -59,7 +59,7 @@ def draw_paragraph(
     painter.setFont(font)
     painter.setPen(QPen(colour))
     tall = QRectF(rect.left(), rect.top(), rect.width(), max(rect.height(), font.pixelSize() * 60))
-    return painter.drawText(tall, flags, text).height()  # type: ignore[return-value]
+    return painter.drawText(tall, flags, text).height()
 
 
 def text_width(text: str, font: QFont) -> float:

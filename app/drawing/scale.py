@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 from PySide6.QtCore import QRectF
 
 
@@ -19,12 +19,12 @@ class Scale:
     low_mv: float
     high_mv: float
 
-    def x(self, time_ms: NDArray[np.float64]) -> NDArray[np.float64]:
+    def x(self, time_ms: ArrayLike) -> NDArray[np.float64]:
         """Horizontal positions."""
         share = (np.asarray(time_ms) - self.first_ms) / (self.last_ms - self.first_ms)
         return self.rect.left() + share * self.rect.width()
 
-    def y(self, millivolts: NDArray[np.float64]) -> NDArray[np.float64]:
+    def y(self, millivolts: ArrayLike) -> NDArray[np.float64]:
         """Vertical positions; up is positive."""
         share = (np.asarray(millivolts) - self.low_mv) / (self.high_mv - self.low_mv)
         return self.rect.bottom() - share * self.rect.height()

@@ -201,7 +201,7 @@ def _evidence_page(page: Page, comparison: Comparison) -> None:
 def _changes_table(page: Page, comparison: Comparison) -> None:
     columns = [
         Column("lead", 8.5),
-        Column("judgement", 31.0),
+        Column("judgement", 29.0),
         *[
             Column(what, width, right=True, group=name)
             for name in ("ST", "T")
@@ -209,8 +209,8 @@ def _changes_table(page: Page, comparison: Comparison) -> None:
                 ("later", 12.5),
                 ("change", 12.5),
                 ("noise ±", 11.5),
-                ("reach", 20.5),
-                ("remainder", 14.0),
+                ("reach", 20.0),
+                ("remainder", 15.5),
             )
         ],
     ]
@@ -254,8 +254,8 @@ def _placement(page: Page, comparison: Comparison) -> None:
     draw_table(side, columns, rows, left=map_rect.right() + mm(2.0))
     tail = comparison.placement.tail_probability
     text = (
-        "Open ring: where the electrode belongs. Disc: estimate for the later recording, where "
-        "the QRS points to a shift; ellipse: 95 % range."
+        "Open ring: where the electrode belongs. Disc and ellipse: estimate for the later "
+        "recording and its 95 % range, where the QRS surely points to a shift."
     )
     if tail is not None:
         text += (

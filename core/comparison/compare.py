@@ -51,10 +51,6 @@ from core.settings import Settings
 from core.torso.ensemble import MODEL_NAME, load_ensemble
 from core.wording import judgements as say
 
-# A smaller shift is within what careful staff place apart (12 mm in each direction, from
-# McCann 2007), and is not worth a word.
-SMALLEST_NAMED_MM = 12.0
-
 Progress = Callable[[float, str], None]
 Numbers = dict[str, NDArray[np.float64]]
 
@@ -301,21 +297,15 @@ def _overall(leads: dict[str, LeadComparison], placement: Placement) -> Overall:
         changes.setdefault(comparison.judgement, {})[lead] = most
     return Overall(
         judgement=judge_pair(changes),
-        sentence=say.overall_sentence(changes, shifts_worth_naming(placement)),
+        sentence=say.overall_sentence(changes, _shifts_worth_naming(placement)),
         next_step=say.next_step(changes),
     )
 
 
-def shifts_worth_naming(placement: Placement) -> list[say.ShiftWords]:
-    """Shifts that the QRS points to, in the directions whose range excludes 0."""
-    found = []
-    for electrode, shift in placement.electrodes.items():
-        if shift is None or not shift.qrs_points_to_shift:
-            continue
-        for direction, size in (("up", shift.up_mm), ("left", shift.left_mm)):
-            certain = size.low > 0 or size.high < 0
-            if certain and abs(size.estimate) >= SMALLEST_NAMED_MM:
-                found.append(
-                    say.ShiftWords(electrode, direction, size.estimate, size.low, size.high)
-                )
-    return found
+def _shifts_worth_naming(placement: Placement) -> list[say.ShiftWords]:
+    return [
+        say.ShiftWords(electrode, direction, size.estimate, size.low, size.high)
+        for electrode, shift in placement.electrodes.items()
+        if shift is not None
+        for direction, size in shift.worth_naming().items()
+    ]

@@ -17,6 +17,9 @@ from core.version import PROGRAM_NAME, program_version
 from core.wording.caution import CAUTIONS, PLACEMENT_CAVEAT
 
 CONTRACT = "samespot-comparison/1"
+# A smaller shift is within what careful staff place apart (12 mm in each direction, from
+# McCann 2007), and is not worth a word.
+SMALLEST_NAMED_MM = 12.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,6 +75,11 @@ class ShiftRange:
     low: float
     high: float
 
+    @property
+    def is_certain(self) -> bool:
+        """Whether the range excludes no displacement at all."""
+        return self.low > 0 or self.high < 0
+
     def to_dict(self) -> dict[str, float]:
         """The range as JSON writes it."""
         return {"estimate": self.estimate, "low": self.low, "high": self.high}
@@ -88,6 +96,17 @@ class ElectrodeShift:
     up_mm: ShiftRange
     left_mm: ShiftRange
     qrs_points_to_shift: bool
+
+    def worth_naming(self) -> dict[str, ShiftRange]:
+        """The directions, ``"up"`` and ``"left"``, in which the QRS surely points to a shift."""
+        if not self.qrs_points_to_shift:
+            return {}
+        directions = {"up": self.up_mm, "left": self.left_mm}
+        return {
+            name: size
+            for name, size in directions.items()
+            if size.is_certain and abs(size.estimate) >= SMALLEST_NAMED_MM
+        }
 
     def to_dict(self) -> dict[str, Any]:
         """The shift as JSON writes it."""

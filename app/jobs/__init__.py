@@ -1,0 +1,1 @@
+"""The only place that runs the engine off the thread of the window."""

@@ -1,0 +1,132 @@
+"""Read and compare a pair in a worker thread; the newest request wins."""
+
+from __future__ import annotations
+
+import logging
+import threading
+from collections.abc import Callable
+from dataclasses import dataclass
+from pathlib import Path
+
+from PySide6.QtCore import QObject, QRunnable, QThreadPool, Signal
+
+from core import Comparison, Settings, compare, read_recording
+from core.errors import SamespotError, Stopped
+
+log = logging.getLogger(__name__)
+
+Work = Callable[["CompareRequest", Callable[[float, str], None], Callable[[], bool]], Comparison]
+
+
+@dataclass(frozen=True, slots=True)
+class CompareRequest:
+    """What to compare, and how."""
+
+    earlier: Path
+    later: Path
+    settings: Settings
+    # Of two files dropped at once, nobody said which is the earlier.
+    order_by_time: bool = False
+
+
+def compare_files(
+    request: CompareRequest,
+    report_progress: Callable[[float, str], None],
+    should_stop: Callable[[], bool],
+) -> Comparison:
+    """Read both recordings and compare them."""
+    report_progress(0.0, "reading the recordings")
+    earlier, later = read_recording(request.earlier), read_recording(request.later)
+    times = earlier.recorded_at, later.recorded_at
+    if request.order_by_time and None not in times and times[0] > times[1]:  # type: ignore[operator]
+        earlier, later = later, earlier
+    return compare(
+        earlier,
+        later,
+        request.settings,
+        report_progress=report_progress,
+        should_stop=should_stop,
+    )
+
+
+class CompareRunner(QObject):
+    """Runs one comparison at a time and tells how it went.
+
+    A new request ends the one before it, whose result, if it still comes, is dropped.
+    """
+
+    progressed = Signal(float, str)
+    finished = Signal(object)
+    failed = Signal(str)
+    _came = Signal(object, str, object)
+
+    def __init__(self, work: Work = compare_files) -> None:
+        super().__init__()
+        self._work = work
+        self._pool = QThreadPool()
+        self._pool.setMaxThreadCount(1)
+        self._current: _Task | None = None
+        self._came.connect(self._pass_on)
+
+    def start(self, request: CompareRequest) -> None:
+        """Compare a pair, instead of whatever is being compared."""
+        self.cancel()
+        self._current = _Task(request, self._work, self._came.emit)
+        self._pool.start(self._current)
+
+    def cancel(self) -> None:
+        """End the comparison that is running; nothing more is heard of it."""
+        if self._current is not None:
+            self._current.stop.set()
+            self._current = None
+
+    def shut_down(self) -> None:
+        """End the comparison that is running and wait until its thread has left it."""
+        self.cancel()
+        self._pool.waitForDone()
+
+    def _pass_on(self, task: object, kind: str, content: object) -> None:
+        if task is not self._current:
+            return
+        if kind == "progress":
+            self.progressed.emit(*content)  # type: ignore[misc]
+            return
+        self._current = None
+        if kind == "result":
+            self.finished.emit(content)
+        else:
+            self.failed.emit(content)
+
+
+class _Task(QRunnable):
+    """One comparison in the worker thread."""
+
+    def __init__(
+        self, request: CompareRequest, work: Work, tell: Callable[[object, str, object], None]
+    ) -> None:
+        super().__init__()
+        self.stop = threading.Event()
+        self._request, self._work, self._tell = request, work, tell
+
+    def run(self) -> None:
+        """Do the work; whatever happens becomes one message."""
+        try:
+            result = self._work(self._request, self._report, self.stop.is_set)
+        except Stopped:
+            return
+        except SamespotError as error:
+            self._tell(self, "failure", str(error))
+        except Exception as error:  # a window must outlive any fault of the engine
+            log.exception("a comparison failed")
+            self._tell(
+                self,
+                "failure",
+                f"The comparison failed by a fault of the program ({type(error).__name__}). "
+                "The recordings are untouched; please report it with the details that the "
+                "program printed.",
+            )
+        else:
+            self._tell(self, "result", result)
+
+    def _report(self, share: float, words: str) -> None:
+        self._tell(self, "progress", (share, words))

@@ -1,0 +1,1 @@
+"""What is open and selected: signals, no widgets."""

@@ -1,0 +1,112 @@
+"""The state of the bench. Views write to it and listen to it; none knows another."""
+
+from __future__ import annotations
+
+from enum import Enum
+from pathlib import Path
+
+from PySide6.QtCore import QObject, Signal
+
+from core.comparison.judge import BY_WEIGHT, STEADY
+from core.comparison.results import Comparison
+from core.recordings.leads import TWELVE_LEADS
+
+
+class Phase(Enum):
+    """What the bench is doing."""
+
+    EMPTY = "empty"
+    WORKING = "working"
+    JUDGED = "judged"
+    REFUSED = "refused"
+
+
+class BenchState(QObject):
+    """Which pair is open, how far its comparison is, and which lead is looked at."""
+
+    phase_changed = Signal()
+    pair_changed = Signal()
+    progress_changed = Signal()
+    lead_changed = Signal()
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.phase = Phase.EMPTY
+        self.earlier: Path | None = None
+        self.later: Path | None = None
+        self.comparison: Comparison | None = None
+        self.refusal = ""
+        self.progress = 0.0
+        self.progress_words = ""
+        self.lead = "V2"
+
+    @property
+    def has_comparison(self) -> bool:
+        """Whether there is a result to look at and to export."""
+        return self.phase is Phase.JUDGED
+
+    @property
+    def has_pair(self) -> bool:
+        """Whether both recordings are chosen."""
+        return self.earlier is not None and self.later is not None
+
+    def choose(self, earlier: Path | None, later: Path | None) -> None:
+        """Choose recordings; a comparison of others is put away."""
+        self.earlier, self.later = earlier, later
+        self.comparison = None
+        self.refusal = ""
+        self._enter(Phase.EMPTY)
+        self.pair_changed.emit()
+
+    def begin(self) -> None:
+        """The comparison of the chosen pair has started."""
+        self.comparison = None
+        self.progress, self.progress_words = 0.0, "reading"
+        self._enter(Phase.WORKING)
+        self.progress_changed.emit()
+
+    def advance(self, share: float, words: str) -> None:
+        """The comparison has come so far."""
+        self.progress, self.progress_words = share, words
+        self.progress_changed.emit()
+
+    def finish(self, comparison: Comparison) -> None:
+        """The comparison is done; the lead that matters most comes into view."""
+        self.comparison = comparison
+        self._enter(Phase.JUDGED)
+        self.select_lead(weightiest_lead(comparison))
+
+    def refuse(self, reason: str) -> None:
+        """The pair cannot be compared."""
+        self.refusal = reason
+        self._enter(Phase.REFUSED)
+
+    def stop(self) -> None:
+        """The reader stopped the comparison."""
+        self._enter(Phase.EMPTY)
+
+    def select_lead(self, lead: str) -> None:
+        """Look at a lead."""
+        if lead in TWELVE_LEADS and lead != self.lead:
+            self.lead = lead
+            self.lead_changed.emit()
+
+    def _enter(self, phase: Phase) -> None:
+        self.phase = phase
+        self.phase_changed.emit()
+
+
+def weightiest_lead(comparison: Comparison) -> str:
+    """The lead of the weightiest judgement that changed most for its noise; V2 if all steady."""
+
+    def weight(lead: str) -> tuple[int, float]:
+        result = comparison.leads[lead]
+        changes = [
+            abs(m.change) / m.noise_high
+            for m in (result.measures["st_mv"], result.measures["t_mv"])
+            if m.change is not None and m.noise_high
+        ]
+        return -BY_WEIGHT.index(result.judgement), max(changes, default=0.0)
+
+    best = max(comparison.leads, key=weight)
+    return "V2" if comparison.leads[best].judgement == STEADY else best

@@ -1,0 +1,1 @@
+"""Widgets: they draw results and compute none."""

@@ -1,0 +1,27 @@
+"""Write a comparison to files."""
+
+from __future__ import annotations
+
+import json
+from pathlib import Path
+
+from app.report.report import write_report
+from core.comparison.results import Comparison
+from core.comparison.table import comparison_csv
+from core.files import write_atomically
+
+
+def write_pdf(path: Path, comparison: Comparison) -> None:
+    """Write the comparison report."""
+    write_atomically(path, write_report(comparison))
+
+
+def write_json(path: Path, comparison: Comparison) -> None:
+    """Write the comparison as JSON."""
+    text = json.dumps(comparison.to_dict(), ensure_ascii=False, indent=1, allow_nan=False)
+    write_atomically(path, text.encode())
+
+
+def write_csv(path: Path, comparison: Comparison) -> None:
+    """Write the table of measures."""
+    write_atomically(path, comparison_csv(comparison).encode())

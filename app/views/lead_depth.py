@@ -1,0 +1,124 @@
+"""One lead in depth: both beats, their difference in its bands, and the reason."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QPointF, QRectF, QSize, Qt
+from PySide6.QtGui import QPainter, QPaintEvent, QPen
+from PySide6.QtWidgets import QSizePolicy, QWidget
+
+from app.drawing.lead_plots import (
+    RIGHT,
+    draw_difference,
+    draw_fiducials,
+    draw_overlay,
+)
+from app.drawing.pen import Style, draw_mark, draw_paragraph, draw_text, text_width
+from app.state.bench_state import BenchState
+from app.views.theme import screen_style
+from core.wording.judgements import WORDS
+
+PAD = 14
+LEGEND = (
+    ("earlier", "earlier"),
+    ("later", "later"),
+    ("noise", "repeat noise"),
+    ("reach", "placement reach"),
+)
+DIFFERENCE_LEGEND = (("ink", "change"), ("in_reach", "expected from the shift"))
+
+
+class LeadDepth(QWidget):
+    """The selected lead, large."""
+
+    def __init__(self, state: BenchState) -> None:
+        super().__init__()
+        self._state = state
+        self.setMinimumSize(340, 330)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
+        self.setAccessibleName("One lead in depth")
+        state.phase_changed.connect(self.update)
+        state.lead_changed.connect(self.update)
+
+    def sizeHint(self) -> QSize:
+        """Wider than a cell of the wall, and as high as the wall."""
+        return QSize(520, 560)
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        """Draw heading, overlay, difference and reason, top to bottom."""
+        comparison, lead = self._state.comparison, self._state.lead
+        if comparison is None:
+            return
+        style = screen_style()
+        palette = style.palette
+        painter = QPainter(self)
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        painter.setPen(QPen(palette.colour("line"), 1))
+        painter.setBrush(palette.colour("card"))
+        painter.drawRect(QRectF(self.rect()).adjusted(0.5, 0.5, -0.5, -0.5))
+        result = comparison.leads[lead]
+        inside = QRectF(self.rect()).adjusted(PAD, 10, -PAD, -10)
+        self._draw_heading(painter, inside, style, lead, result.judgement)
+
+        reason_height = self._reason_height(painter, inside, style, result.reason)
+        plots = inside.adjusted(0, 32, 0, -reason_height - 8)
+        labels = QRectF(plots.left(), plots.top(), plots.width(), 18)
+        legend = 20.0
+        overlay_height = (plots.height() - 18 - 2 * legend) * 0.60
+        overlay = QRectF(plots.left(), labels.bottom(), plots.width(), overlay_height)
+        scale = draw_overlay(painter, overlay, comparison, lead, style, every=1)
+        draw_fiducials(painter, scale, comparison, style, labels)
+        row = QRectF(plots.left(), overlay.bottom() + 2, plots.width(), legend)
+        _draw_legend(painter, row, style, LEGEND, "grid 40 ms × 0.1 mV")
+        below = QRectF(
+            plots.left(), row.bottom(), plots.width(), plots.bottom() - row.bottom() - legend
+        )
+        draw_difference(painter, below, comparison, lead, style)
+        row = QRectF(plots.left(), below.bottom() + 2, plots.width(), legend)
+        _draw_legend(painter, row, style, DIFFERENCE_LEGEND, "later less earlier")
+        painter.end()
+
+    def _draw_heading(
+        self, painter: QPainter, inside: QRectF, style: Style, lead: str, judgement: str
+    ) -> None:
+        top = QRectF(inside.left(), inside.top(), inside.width(), 26)
+        heading = style.font(style.heading, bold=True)
+        draw_text(painter, top, f"{lead} in depth", heading, style.palette.colour("ink"))
+        colour, font = style.palette.judgement(judgement), style.font(style.body)
+        draw_text(painter, top, WORDS[judgement], font, colour, RIGHT)
+        at = QPointF(top.right() - text_width(WORDS[judgement], font) - 12, top.center().y())
+        draw_mark(painter, at, 11, judgement, colour)
+
+    def _reason_height(self, painter: QPainter, inside: QRectF, style: Style, reason: str) -> float:
+        """Draw the reason at the bottom; the height that it takes."""
+        font = style.font(style.body)
+        flags = int(Qt.AlignmentFlag.AlignLeft | Qt.TextFlag.TextWordWrap)
+        painter.setFont(font)
+        height = painter.boundingRect(inside, flags, reason).height()
+        at = QRectF(inside.left(), inside.bottom() - height, inside.width(), height)
+        draw_paragraph(painter, at, reason, font, style.palette.colour("ink"))
+        return height
+
+
+def _draw_legend(
+    painter: QPainter,
+    row: QRectF,
+    style: Style,
+    items: tuple[tuple[str, str], ...],
+    note: str,
+) -> None:
+    """Short samples of lines and bands with their names, a note at the right."""
+    palette, font = style.palette, style.font(style.caption)
+    x, middle = row.left(), row.center().y()
+    for role, text in items:
+        if role in ("noise", "reach"):
+            painter.fillRect(QRectF(x, middle - 5, 16, 10), palette.band(role))
+        else:
+            dash = Qt.PenStyle.DashLine if role == "in_reach" else Qt.PenStyle.SolidLine
+            painter.setPen(QPen(palette.colour(role), 2, dash))
+            painter.drawLine(QPointF(x, middle), QPointF(x + 16, middle))
+        width = text_width(text, font) + 2
+        box = QRectF(x + 21, row.top(), width, row.height())
+        draw_text(painter, box, text, font, palette.colour("soft_ink"))
+        x += 21 + width + 12
+    if x + text_width(note, font) <= row.right():
+        draw_text(painter, row, note, font, palette.colour("soft_ink"), RIGHT)

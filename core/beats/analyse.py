@@ -139,17 +139,18 @@ class _Rounds:
                 raise NotEnoughBeats(_too_few(self.name, self.n_samples / self.rate, 0))
             template = np.median(qrs[alike], axis=0)
         self._put_r_at_largest(template)
+        template = np.median(self._aligned(self.half, self.half, np.flatnonzero(alike)), axis=0)
 
         for _ in range(ROUNDS):
-            why_not = self._reasons()
+            why_not = self._reasons(template)
             used = self._enough(why_not)
             aligned = self._aligned(self.before, self.after, used)
             representative = representative_of(aligned)
             self._take_out_wander(representative)
-            self._align(representative[:, self.before - self.half : self.before + self.half])
-        self._take_out_mains(representative)
+            template = representative[:, self.before - self.half : self.before + self.half]
+            self._align(template)
+        self._take_out_mains(representative, used)
 
-        used = self._enough(why_not)
         aligned = self._aligned(self.before, self.after, used)
         representative = representative_of(aligned)
         for index in used[self._noisy(aligned, representative)]:
@@ -192,11 +193,11 @@ class _Rounds:
             self.centres + int(np.argmax(size)) - self.half, 0, self.n_samples - 1
         )
 
-    def _reasons(self) -> list[str | None]:
+    def _reasons(self, template: NDArray[np.float64]) -> list[str | None]:
         """Why each beat is left out of the representative beat; None where it is used."""
         whole = self._whole()
         qrs = self._aligned(self.half, self.half, np.arange(whole.size))
-        same = shape_correlation(qrs, np.median(qrs, axis=0))
+        same = shape_correlation(qrs, template)
         early = premature(self.centres / self.rate)
         reasons: list[str | None] = []
         for index, centre in enumerate(whole):
@@ -237,10 +238,21 @@ class _Rounds:
         residual, foreign = self._residual(representative)
         self.signal = self.raw - estimate_wander(residual, foreign, sampling_rate_hz=self.rate)
 
-    def _take_out_mains(self, representative: NDArray[np.float64]) -> None:
+    def _take_out_mains(
+        self, representative: NDArray[np.float64], used: NDArray[np.int64]
+    ) -> None:
+        whole = self._whole()
+        order = np.sort(whole)
+
+        def less_locked_part(signals: NDArray[np.float64]) -> NDArray[np.float64]:
+            windows = cut_windows(signals, whole[used], self.before, self.after)
+            mean = windows.mean(axis=0)
+            return signals - beat_locked_part(mean, self.before, order, self.n_samples)
+
         residual, foreign = self._residual(representative)
-        hum = estimate_mains(residual, foreign, sampling_rate_hz=self.rate)
-        self.signal = self.signal - hum
+        self.signal = self.signal - estimate_mains(
+            residual, foreign, less_locked_part, sampling_rate_hz=self.rate
+        )
 
     def _noisy(
         self, aligned: NDArray[np.float64], representative: NDArray[np.float64]

@@ -13,14 +13,21 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from scipy.ndimage import gaussian_filter1d
+
 from core.beats.analyse import BeatAnalysis
 from core.conditioning.zero_phase import low_pass
 
 # A P wave stands out from what averaging leaves of the beat-to-beat noise by this factor;
 # flutter and fibrillation waves, not locked to the QRS, do not.
 P_STANDS_OUT = 5.0
+QRS_SMOOTHING_S, P_SMOOTHING_S = 0.003, 0.007
+# The QRS is over where the velocity stays for so long under this share of its top plus so many
+# times its quiet level.
+QRS_SHARE, QRS_QUIET_TIMES, QUIET_QUANTILE = 0.015, 1.5, 0.3
+QRS_HOLD_S = 0.016
 # Readers mark a few ms outside the point where the velocity sinks into the noise.
-QRS_MARGIN_S = 0.004
+QRS_MARGIN_S = 0.002
 P_ONSET_MARGIN_S = 0.004
 P_OFFSET_MARGIN_S = -0.006
 T_MARGIN_S = 0.010
@@ -55,31 +62,31 @@ class Fiducials:
 def find_fiducials(analysis: BeatAnalysis) -> Fiducials:
     """Fiducial points of a representative beat."""
     beat, rate, r = analysis.representative_mv, analysis.sampling_rate_hz, analysis.r_index
-    onset = _qrs_onset(beat, rate, r)
-    offset = _qrs_offset(beat, rate, r)
+    onset, offset = _qrs_onset_and_offset(beat, rate, r)
     t_peak, t_offset = _t_peak_and_offset(beat, rate, offset)
     p = _p_onset_and_offset(analysis, onset)
     return Fiducials(onset, offset, t_peak, t_offset, *p)
 
 
 def spatial_velocity(
-    beat_mv: NDArray[np.float64], rate_hz: float, *, highest_hz: float, span_s: float
+    beat_mv: NDArray[np.float64], rate_hz: float, *, smoothing_s: float
 ) -> NDArray[np.float64]:
-    """Root mean square over the leads of the slope across *span_s*, in mV/s.
+    """Root mean square over the leads of the slope, smoothed by a Gaussian, in mV/s.
+
+    A Gaussian, because it reaches least far: what is smoothed over a corner shifts it.
 
     Parameters
     ----------
     beat_mv : ndarray, shape (n_leads, n)
+    smoothing_s : float
+        Standard deviation of the Gaussian.
 
     Returns
     -------
     ndarray, shape (n,)
     """
-    smooth = low_pass(beat_mv, cutoff_hz=highest_hz, sampling_rate_hz=rate_hz)
-    half = max(1, round(span_s * rate_hz / 2))
-    slope = np.zeros_like(smooth)
-    slope[:, half:-half] = (smooth[:, 2 * half :] - smooth[:, : -2 * half]) * (rate_hz / (2 * half))
-    return np.asarray(np.sqrt(np.mean(slope**2, axis=0)))
+    slope = gaussian_filter1d(beat_mv, smoothing_s * rate_hz, axis=1, order=1, mode="nearest")
+    return np.asarray(np.sqrt(np.mean((slope * rate_hz) ** 2, axis=0)))
 
 
 def first_quiet(velocity: NDArray[np.float64], threshold: float, hold: int, otherwise: int) -> int:
@@ -91,37 +98,27 @@ def first_quiet(velocity: NDArray[np.float64], threshold: float, hold: int, othe
     return int(np.argmax(runs)) if runs.any() else otherwise
 
 
-def _qrs_onset(beat: NDArray[np.float64], rate: float, r: int) -> int:
-    velocity = spatial_velocity(beat, rate, highest_hz=60.0, span_s=0.004)
-    quiet = velocity[max(0, r - round(0.25 * rate)) : max(1, r - round(0.07 * rate))]
-    threshold = _qrs_threshold(velocity, quiet, rate, r, quiet_times=3.0)
-    farthest = min(r, round(0.16 * rate))
-    back = velocity[r - farthest : r + 1][::-1]
-    sample = r - first_quiet(back, threshold, round(0.016 * rate), farthest)
-    return max(0, sample - round(QRS_MARGIN_S * rate))
-
-
-def _qrs_offset(beat: NDArray[np.float64], rate: float, r: int) -> int:
-    velocity = spatial_velocity(beat, rate, highest_hz=40.0, span_s=0.008)
+def _qrs_onset_and_offset(beat: NDArray[np.float64], rate: float, r: int) -> tuple[int, int]:
+    velocity = spatial_velocity(beat, rate, smoothing_s=QRS_SMOOTHING_S)
     last = velocity.size - 1
-    quiet = velocity[min(last, r + round(0.07 * rate)) : r + round(0.30 * rate)]
-    threshold = _qrs_threshold(velocity, quiet, rate, r, quiet_times=2.0)
-    ahead = velocity[r : r + round(0.20 * rate)]
-    sample = r + first_quiet(ahead, threshold, round(0.016 * rate), ahead.size - 1)
-    return min(last, sample + round(QRS_MARGIN_S * rate))
-
-
-def _qrs_threshold(
-    velocity: NDArray[np.float64],
-    quiet: NDArray[np.float64],
-    rate: float,
-    r: int,
-    *,
-    quiet_times: float,
-) -> float:
     near = round(0.06 * rate)
     top = float(velocity[max(0, r - near) : r + near].max())
-    return 0.015 * top + quiet_times * float(np.quantile(quiet, 0.3))
+    hold = round(QRS_HOLD_S * rate)
+
+    def threshold(quiet: NDArray[np.float64]) -> float:
+        level = float(np.quantile(quiet, QUIET_QUANTILE))
+        return QRS_SHARE * top + QRS_QUIET_TIMES * level
+
+    before = velocity[max(0, r - round(0.25 * rate)) : max(1, r - round(0.07 * rate))]
+    farthest = min(r, round(0.16 * rate))
+    back = velocity[r - farthest : r + 1][::-1]
+    onset = r - first_quiet(back, threshold(before), hold, farthest)
+
+    after = velocity[min(last, r + round(0.07 * rate)) : r + round(0.30 * rate)]
+    ahead = velocity[r : r + round(0.20 * rate)]
+    offset = r + first_quiet(ahead, threshold(after), hold, ahead.size - 1)
+    margin = round(QRS_MARGIN_S * rate)
+    return max(0, onset - margin), min(last, offset + margin)
 
 
 def _t_peak_and_offset(beat: NDArray[np.float64], rate: float, qrs_offset: int) -> tuple[int, int]:
@@ -152,7 +149,9 @@ def _p_onset_and_offset(
     last = qrs_onset - round(0.010 * rate)
     if last - first < round(0.06 * rate):
         return None, None
-    smooth = low_pass(beat, cutoff_hz=25.0, sampling_rate_hz=rate)[:, first:last]
+    # Cut off before the QRS, which would leak into a smoothed P.
+    before_qrs = beat[:, : qrs_onset + 1]
+    smooth = low_pass(before_qrs, cutoff_hz=25.0, sampling_rate_hz=rate)[:, first:last]
     level = np.median(smooth[:, -round(0.012 * rate) :], axis=1, keepdims=True)
     size = np.sqrt(np.mean((smooth - level) ** 2, axis=0))
     margin = round(0.03 * rate)
@@ -160,7 +159,7 @@ def _p_onset_and_offset(
     if size[peak] < P_STANDS_OUT * _left_after_averaging(analysis, first, last):
         return None, None
 
-    velocity = spatial_velocity(beat, rate, highest_hz=25.0, span_s=0.016)[first:last]
+    velocity = spatial_velocity(before_qrs, rate, smoothing_s=P_SMOOTHING_S)[first:last]
     reach = round(0.07 * rate)
     rise_from = max(0, peak - reach)
     rise = rise_from + int(np.argmax(velocity[rise_from : peak + 1]))

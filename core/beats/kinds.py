@@ -13,6 +13,8 @@ PREMATURE_SHARE = 0.80
 # Above this relative spread of successive intervals the rhythm foretells nothing, as in
 # atrial fibrillation, and timing is no reason to leave a beat out.
 IRREGULAR_SPREAD = 0.12
+# Standard deviation of a normal distribution over its median absolute deviation.
+NORMAL_OVER_MEDIAN_DEVIATION = 1.4826
 # For the pairwise step; more beats than this are sampled evenly.
 MOST_PAIRED = 200
 
@@ -52,7 +54,10 @@ def premature(r_times_s: NDArray[np.float64]) -> NDArray[np.bool_]:
         return early
     rr = np.diff(r_times_s)
     usual = float(np.median(rr))
-    spread = 1.4826 * float(np.median(np.abs(np.diff(rr)))) / np.sqrt(2) / usual
+    # A slow swing raises the first, one ectopic beat among few the second; fibrillation both.
+    about_usual = float(np.median(np.abs(rr - usual)))
+    from_beat_to_beat = float(np.median(np.abs(np.diff(rr)))) / np.sqrt(2)
+    spread = NORMAL_OVER_MEDIAN_DEVIATION * min(about_usual, from_beat_to_beat) / usual
     if spread <= IRREGULAR_SPREAD:
         early[1:] = rr < PREMATURE_SHARE * usual
     return early

@@ -1,27 +1,33 @@
-"""Mains interference, fitted to what is left when the beats are taken away.
+"""Mains interference, fitted to a recording together with its beats.
 
-A notch filter rings after every QRS, right where ST is measured. Here the hum's amplitude and
-phase, free to drift slowly, are estimated from the recording less its beat-locked part and
-subtracted; a beat cannot excite it.
+A notch filter rings after every QRS, right where ST is measured. Here a hum whose amplitude and
+phase may drift slowly is fitted by least squares to what is left when the beats are taken away,
+and subtracted; a beat cannot excite it. Averaging beats keeps a part of the hum, so the same
+part is taken from the hum's own basis before the fit (Frisch & Waugh 1933, Econometrica 1:387):
+the result is that of fitting beats and hum at once.
 """
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import numpy as np
 from numpy.typing import NDArray
 
-from core.conditioning.gaps import bridge_gaps
-from core.conditioning.zero_phase import low_pass
-
 MAINS_HZ = (50.0, 60.0)
-# How fast amplitude and phase may drift. Narrow enough that little else is taken along.
-DRIFT_HZ = 0.5
-# Hum stands out when its band holds this many times the power of its neighbours.
+# Amplitude and phase are given anew this often, and run smoothly between.
+KNOT_S = 4.0
+# Hum stands out when the fit explains this many times what it explains beside the mains.
 STANDS_OUT = 6.0
+BESIDE_HZ = (-5.0, -3.0, 3.0, 5.0)
 
 
 def estimate_mains(
-    residual_mv: NDArray[np.float64], foreign: NDArray[np.bool_], *, sampling_rate_hz: float
+    residual_mv: NDArray[np.float64],
+    foreign: NDArray[np.bool_],
+    less_locked_part: Callable[[NDArray[np.float64]], NDArray[np.float64]],
+    *,
+    sampling_rate_hz: float,
 ) -> NDArray[np.float64]:
     """Hum at 50 or 60 Hz in a recording from which the beats have been subtracted.
 
@@ -30,6 +36,9 @@ def estimate_mains(
     residual_mv : ndarray, shape (n_leads, n_samples)
     foreign : ndarray of bool, shape (n_samples,)
         True where the beat-locked part does not describe the recording.
+    less_locked_part : callable
+        Takes signals (shape (k, n_samples)) and subtracts from each what repeats with the
+        beats, as was done with the recording.
 
     Returns
     -------
@@ -37,33 +46,42 @@ def estimate_mains(
         Hum, to be subtracted; exactly 0 in leads where none stands out.
     """
     hum = np.zeros_like(residual_mv)
-    bridged = bridge_gaps(residual_mv, foreign)
-    time_s = np.arange(residual_mv.shape[1]) / sampling_rate_hz
+    here = ~foreign
     for mains_hz in MAINS_HZ:
-        if mains_hz >= 0.45 * sampling_rate_hz:
+        if mains_hz + max(BESIDE_HZ) >= 0.5 * sampling_rate_hz:
             continue
-        at_mains = _narrow_band(bridged, mains_hz, time_s, sampling_rate_hz)
+        at_mains, explained = _fit(residual_mv, here, less_locked_part, mains_hz, sampling_rate_hz)
         beside = [
-            _power(_narrow_band(bridged, mains_hz + offset, time_s, sampling_rate_hz))
-            for offset in (-4.0, -2.5, 2.5, 4.0)
+            _fit(residual_mv, here, less_locked_part, mains_hz + away, sampling_rate_hz)[1]
+            for away in BESIDE_HZ
         ]
-        stands_out = _power(at_mains) > STANDS_OUT * np.median(beside, axis=0)
-        carrier = np.exp(2j * np.pi * mains_hz * time_s)
-        hum += np.where(stands_out[:, None], 2 * (at_mains * carrier).real, 0.0)
+        stands_out = explained > STANDS_OUT * np.median(beside, axis=0)
+        hum += np.where(stands_out[:, None], at_mains, 0.0)
     return hum
 
 
-def _narrow_band(
-    signal: NDArray[np.float64], centre_hz: float, time_s: NDArray[np.float64], rate_hz: float
-) -> NDArray[np.complex128]:
-    """Complex amplitude of the band of +-DRIFT_HZ around a frequency."""
-    mixed = signal * np.exp(-2j * np.pi * centre_hz * time_s)
-    parts = [
-        low_pass(part, cutoff_hz=DRIFT_HZ, sampling_rate_hz=rate_hz)
-        for part in (mixed.real, mixed.imag)
-    ]
-    return np.asarray(parts[0] + 1j * parts[1])
+def _fit(
+    residual_mv: NDArray[np.float64],
+    here: NDArray[np.bool_],
+    less_locked_part: Callable[[NDArray[np.float64]], NDArray[np.float64]],
+    hz: float,
+    rate_hz: float,
+) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
+    """The fitted wave of every lead, and the power that it explains."""
+    basis = _basis(residual_mv.shape[1], hz, rate_hz)
+    seen = less_locked_part(basis)[:, here]
+    gram = seen @ seen.T
+    coefficients = np.linalg.lstsq(gram, seen @ residual_mv[:, here].T, rcond=1e-10)[0]
+    explained = np.einsum("kl,km,ml->l", coefficients, gram, coefficients)
+    return coefficients.T @ basis, explained
 
 
-def _power(amplitude: NDArray[np.complex128]) -> NDArray[np.float64]:
-    return np.asarray(np.mean(np.abs(amplitude) ** 2, axis=1))
+def _basis(n_samples: int, hz: float, rate_hz: float) -> NDArray[np.float64]:
+    """Cosine and sine, each under raised-cosine humps that add up to 1, shape (k, n)."""
+    time_s = np.arange(n_samples) / rate_hz
+    n_knots = max(2, round(n_samples / rate_hz / KNOT_S) + 1)
+    knots = np.linspace(0.0, time_s[-1], n_knots)
+    away = np.abs(time_s[None, :] - knots[:, None]) / (knots[1] - knots[0])
+    humps = np.where(away < 1.0, 0.5 + 0.5 * np.cos(np.pi * np.minimum(away, 1.0)), 0.0)
+    angle = 2 * np.pi * hz * time_s
+    return np.concatenate([humps * np.cos(angle), humps * np.sin(angle)])

@@ -1,0 +1,1 @@
+"""Tests and checks; ``python -m tests`` runs all of them."""

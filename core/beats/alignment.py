@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 from scipy.fft import irfft, next_fast_len, rfft, rfftfreq
 
 
@@ -82,7 +82,18 @@ def lags_to_template(
     product = np.einsum("blkn,bln->bk", views, centred, optimize=True)
     best = np.clip(np.argmax(product, axis=1), 1, 2 * largest - 1)
     rows = np.arange(best.size)
-    left, top, right = product[rows, best - 1], product[rows, best], product[rows, best + 1]
-    bend = left - 2 * top + right
-    fraction = np.where(bend < 0, 0.5 * (left - right) / np.where(bend < 0, bend, -1.0), 0.0)
-    return np.asarray(best - largest + np.clip(fraction, -1.0, 1.0))
+    fraction = top_of_parabola(
+        product[rows, best - 1], product[rows, best], product[rows, best + 1]
+    )
+    return np.asarray(best - largest + fraction)
+
+
+def top_of_parabola(left: ArrayLike, middle: ArrayLike, right: ArrayLike) -> NDArray[np.float64]:
+    """Where the parabola through three equally spaced values is largest, from the middle one.
+
+    In steps, from -1 to 1; 0 where the three have no top.
+    """
+    left, middle, right = np.asarray(left), np.asarray(middle), np.asarray(right)
+    bend = left - 2 * middle + right
+    top = np.where(bend < 0, 0.5 * (left - right) / np.where(bend < 0, bend, -1.0), 0.0)
+    return np.asarray(np.clip(top, -1.0, 1.0))

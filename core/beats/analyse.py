@@ -11,7 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from core.beats.alignment import cut_windows, lags_to_template, shifted
+from core.beats.alignment import cut_windows, lags_to_template, shifted, top_of_parabola
 from core.beats.detection import detect_beats
 from core.beats.kinds import SAME_SHAPE, dominant_beat, premature, shape_correlation
 from core.beats.representative import beat_locked_part, representative_of
@@ -186,12 +186,12 @@ class _Rounds:
         self.centres = np.clip(moved, 0, self.n_samples - 1)
 
     def _put_r_at_largest(self, template: NDArray[np.float64]) -> None:
-        """R is where the template's leads together are largest."""
+        """R is where the template's leads together are largest, to a fraction of a sample."""
         level = np.median(template[:, [0, -1]], axis=1, keepdims=True)
-        size = np.sqrt(np.mean((template - level) ** 2, axis=0))
-        self.centres = np.clip(
-            self.centres + int(np.argmax(size)) - self.half, 0, self.n_samples - 1
-        )
+        power = np.mean((template - level) ** 2, axis=0)
+        top = int(np.clip(np.argmax(power), 1, power.size - 2))
+        fraction = top_of_parabola(*power[top - 1 : top + 2])
+        self.centres = np.clip(self.centres + top + fraction - self.half, 0, self.n_samples - 1)
 
     def _reasons(self, template: NDArray[np.float64]) -> list[str | None]:
         """Why each beat is left out of the representative beat; None where it is used."""
@@ -238,9 +238,7 @@ class _Rounds:
         residual, foreign = self._residual(representative)
         self.signal = self.raw - estimate_wander(residual, foreign, sampling_rate_hz=self.rate)
 
-    def _take_out_mains(
-        self, representative: NDArray[np.float64], used: NDArray[np.int64]
-    ) -> None:
+    def _take_out_mains(self, representative: NDArray[np.float64], used: NDArray[np.int64]) -> None:
         whole = self._whole()
         order = np.sort(whole)
 

@@ -12,7 +12,6 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
-
 from scipy.ndimage import gaussian_filter1d
 
 from core.beats.analyse import BeatAnalysis

@@ -34,10 +34,8 @@ def repeat_noise(
     z = float(ndtri(0.5 + settings.confidence / 2))
     noise = {}
     for name in COMPARED:
-        errors = [_standard_error(report.beat_values[name]) for report in (earlier, later)]
-        variance = errors[0].squared + errors[1].squared
-        freedom = np.maximum(errors[0].freedom + errors[1].freedom, 1)
-        by_beats = stdtrit(freedom, 0.5 + settings.confidence / 2) ** 2 * variance
+        errors = [standard_error(report.beat_values[name]) for report in (earlier, later)]
+        by_beats = half_width_of_difference(errors[0], errors[1], settings.confidence) ** 2
         floor = settings.repeat_floor[name]
         size = np.mean([_root_mean_square(report.values[name]) for report in (earlier, later)])
         # The floors are 95 % half-widths; another confidence scales them.
@@ -47,19 +45,19 @@ def repeat_noise(
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class _StandardError:
+class StandardError:
     """Squared standard error of a trimmed mean, and its degrees of freedom, shape (12,)."""
 
     squared: NDArray[np.float64]
     freedom: NDArray[np.float64]
 
 
-def _standard_error(beats: NDArray[np.float64]) -> _StandardError:
+def standard_error(beats: NDArray[np.float64]) -> StandardError:
     """Of the trimmed mean over beats (shape (n_beats, 12)), from the winsorised spread.
 
-    Tukey & McLaughlin 1963, Sankhya A 25:331. NaN where fewer than two beats have the wave.
+    Yuen 1974, Biometrika 61:165. NaN where fewer than two beats have the wave.
     """
-    squared, freedom = np.full(beats.shape[1], np.nan), np.zeros(beats.shape[1])
+    squared, freedom = np.full(beats.shape[1], np.nan), np.ones(beats.shape[1])
     for lead, column in enumerate(beats.T):
         values = np.sort(column[~np.isnan(column)])
         n = values.size
@@ -70,10 +68,25 @@ def _standard_error(beats: NDArray[np.float64]) -> _StandardError:
             squared[lead] = MEDIAN_COST * np.var(values, ddof=1) / n
             freedom[lead] = n - 1
             continue
-        kept = np.clip(values, values[cut], values[n - 1 - cut])
-        squared[lead] = np.var(kept, ddof=1) / (n * (1 - 2 * cut / n) ** 2)
-        freedom[lead] = n - 2 * cut - 1
-    return _StandardError(squared, freedom)
+        kept = n - 2 * cut
+        winsorised = np.clip(values, values[cut], values[n - 1 - cut])
+        squared[lead] = n * np.var(winsorised) / (kept * (kept - 1))
+        freedom[lead] = kept - 1
+    return StandardError(squared, freedom)
+
+
+def half_width_of_difference(
+    one: StandardError, other: StandardError, confidence: float
+) -> NDArray[np.float64]:
+    """Half-width of the range that the difference of two trimmed means has by chance.
+
+    Yuen 1974, Biometrika 61:165, with Welch's degrees of freedom.
+    """
+    variance = one.squared + other.squared
+    scatter = one.squared**2 / one.freedom + other.squared**2 / other.freedom
+    # Beats without any scatter have a range of 0 whatever their freedom.
+    freedom = np.divide(variance**2, scatter, out=np.ones_like(variance), where=scatter > 0)
+    return np.asarray(stdtrit(freedom, 0.5 + confidence / 2) * np.sqrt(variance))
 
 
 def _root_mean_square(values: NDArray[np.float64]) -> float:

@@ -40,7 +40,10 @@ class RecordingReport:
     Attributes
     ----------
     beat_mv : ndarray, shape (12, n)
-        The representative beat, isoelectric line at 0.
+        The representative beat as it is measured and drawn: isoelectric line at 0, calmed
+        outside the QRS.
+    averaged_mv : ndarray, shape (12, n)
+        The same beat as averaging left it.
     values : dict of name to ndarray, shape (12,)
         The compared measures of the representative beat; NaN where the wave isn't there.
     beat_values : dict of name to ndarray, shape (n_used, 12)
@@ -52,6 +55,7 @@ class RecordingReport:
     analysis: BeatAnalysis
     points: Points
     beat_mv: NDArray[np.float64]
+    averaged_mv: NDArray[np.float64]
     values: dict[str, NDArray[np.float64]]
     beat_values: dict[str, NDArray[np.float64]]
     q_mv: NDArray[np.float64]
@@ -154,7 +158,7 @@ class RecordingReport:
                 "start_ms": float(self.time_ms[0]),
                 "step_ms": self.step_ms,
                 "leads": {
-                    lead: self.beat_mv[row].tolist() for row, lead in enumerate(TWELVE_LEADS)
+                    lead: self.averaged_mv[row].tolist() for row, lead in enumerate(TWELVE_LEADS)
                 },
             },
         }
@@ -227,14 +231,16 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     points = Points(rate, fiducials, settings.st_point_ms)
 
     def calmed(beats: NDArray[np.float64]) -> NDArray[np.float64]:
-        calm = calm_outside_qrs(
+        return calm_outside_qrs(
             beats, fiducials.qrs_onset, fiducials.qrs_offset, sampling_rate_hz=rate
         )
-        twelve = twelve_from_independent(calm)
-        return twelve - isoelectric_level(twelve, points)
 
-    beat_mv = calmed(analysis.representative_mv)
-    beats_mv = calmed(analysis.aligned_mv)
+    def twelve(beats: NDArray[np.float64]) -> NDArray[np.float64]:
+        leads = twelve_from_independent(beats)
+        return leads - isoelectric_level(leads, points)
+
+    beat_mv = twelve(calmed(analysis.representative_mv))
+    beats_mv = twelve(calmed(analysis.aligned_mv))
     residual_mv = twelve_from_independent(analysis.aligned_mv - analysis.representative_mv)
     _, _, q_mv = qrs_waves(beat_mv[:, points.qrs_window()])
     quality = grade_leads(recording)
@@ -243,6 +249,7 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         analysis=analysis,
         points=points,
         beat_mv=beat_mv,
+        averaged_mv=twelve(analysis.representative_mv),
         values=measure_lead_values(beat_mv, points),
         beat_values=measure_lead_values(beats_mv, points),
         q_mv=q_mv,

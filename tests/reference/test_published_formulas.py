@@ -28,7 +28,8 @@ def test_corrected_qt(qt_ms, rate, bazett, fridericia, framingham, hodges):
 
 
 @pytest.mark.parametrize(
-    ("lead_i", "avf", "axis"), [(0.5, 0.75, 60.00), (1, 1, 49.11), (1, -0.5, -30.0), (-0.5, 0.5, 130.89)]
+    ("lead_i", "avf", "axis"),
+    [(0.5, 0.75, 60.00), (1, 1, 49.11), (1, -0.5, -30.0), (-0.5, 0.5, 130.89)],
 )
 def test_frontal_axis(lead_i, avf, axis):
     # From the definition axis = atan2(2 aVF / sqrt 3, I); given to 0.01 degrees.

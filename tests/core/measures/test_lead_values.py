@@ -77,7 +77,8 @@ def test_thousands_of_beats_are_measured_as_one_is():
     together = measure_lead_values(beats, POINTS)
     for row, single in enumerate(beats):
         for name, value in measure_lead_values(single, POINTS).items():
-            np.testing.assert_array_equal(together[name][row], value)
+            # Sums may be taken in another order.
+            np.testing.assert_allclose(together[name][row], value, atol=1e-12)
 
 
 def test_cutting_a_beat_does_not_change_its_measures():

@@ -3,30 +3,38 @@ from __future__ import annotations
 from dataclasses import replace
 
 import numpy as np
+import pytest
 from scipy.stats import binomtest
 
 from core import Settings, measure
 from core.beats.representative import representative_of
-from core.measures.repeat_noise import _standard_error, repeat_noise
+from core.measures.repeat_noise import (
+    half_width_of_difference,
+    repeat_noise,
+    standard_error,
+)
 from core.settings import RepeatFloor
 from tests.helpers.synthetic import synthetic
 
 
-def test_the_beats_own_range_covers_what_chance_does():
-    """95 % ranges of the difference of two trimmed means hold it in about 95 % of trials."""
-    from scipy.special import stdtrit
-
+# Yuen's t for trimmed means is an approximation: for normal values its own study (1974) has
+# errors of 4.5 to 6 % for a nominal 5 % (value from memory); three and four beats, whose median
+# is taken with the normal's cost, are given more than their 95 %.
+@pytest.mark.parametrize(
+    ("n_beats", "least", "most"),
+    [((9, 11), 0.94, 0.955), ((5, 5), 0.94, 0.965), ((60, 70), 0.94, 0.955), ((3, 4), 0.95, 0.985)],
+)
+def test_the_beats_own_range_covers_what_chance_does(n_beats, least, most):
     rng = np.random.default_rng(11)
-    trials, held = 1500, 0
-    for _ in range(trials):
-        one, other = rng.normal(0, 1, (9, 1)), rng.normal(0, 1, (11, 1))
-        change = (representative_of(other[:, None]) - representative_of(one[:, None]))[0, 0]
-        errors = _standard_error(one), _standard_error(other)
-        freedom = errors[0].freedom[0] + errors[1].freedom[0]
-        half = stdtrit(freedom, 0.975) * np.sqrt(errors[0].squared[0] + errors[1].squared[0])
-        held += abs(change) <= half
-    # The t distribution of a winsorised error is an approximation: 2 % either way is allowed.
-    assert binomtest(held, trials, 0.97).pvalue > 1e-3 or 0.93 < held / trials < 0.97
+    trials = 3000
+    one, other = (rng.normal(0, 1, (n, trials)) for n in n_beats)
+    change = representative_of(other[:, None])[0] - representative_of(one[:, None])[0]
+    half = half_width_of_difference(standard_error(one), standard_error(other), 0.95)
+    held = int((np.abs(change) <= half).sum())
+    # What the true coverage can be, given what was counted, must meet the stated range.
+    low, high = binomtest(held, trials).proportion_ci(0.999)
+    assert low <= most
+    assert high >= least
 
 
 def test_the_floor_is_the_least():
@@ -56,6 +64,6 @@ def test_a_wave_that_one_beat_has_has_no_range():
     beats = np.full((6, 2), np.nan)
     beats[0, 0] = 0.3
     beats[:, 1] = [0.1, 0.2, 0.1, 0.2, 0.1, 0.2]
-    error = _standard_error(beats)
+    error = standard_error(beats)
     assert np.isnan(error.squared[0])
     assert error.squared[1] > 0

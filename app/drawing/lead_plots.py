@@ -14,7 +14,13 @@ from core.wording.judgements import WORDS
 from core.wording.numbers import NARROW, signed
 
 SMALL_SQUARE_MS, SMALL_SQUARE_MV = 40.0, 0.1
+CELL_EVERY = 5  # small squares to a line of a cell's grid
+GRID_OF_CELLS = (
+    f"grid {SMALL_SQUARE_MS * CELL_EVERY / 1000:g} s × {SMALL_SQUARE_MV * CELL_EVERY:g} mV"
+)
 LEAST_HEIGHT_MV = 0.9
+TIME_STEP_MS = 200.0
+LEVEL_STEPS_MV = (0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 50.0)
 RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
 CENTRE = Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignVCenter
 
@@ -40,6 +46,32 @@ def draw_grid(painter: QPainter, scale: Scale, style: Style, *, every: int = 1) 
     painter.setPen(QPen(palette.colour("line"), unit))
     zero = float(scale.y(0.0))
     painter.drawLine(QPointF(scale.rect.left(), zero), QPointF(scale.rect.right(), zero))
+
+
+def axis_room(style: Style) -> tuple[float, float]:
+    """Width at the left and height below that the numbers of `draw_axes` take."""
+    return text_width(f"{signed(-0.5, 1)}{NARROW}mV", style.font(style.caption)) + 6, (
+        style.caption * 1.3
+    )
+
+
+def draw_axes(painter: QPainter, scale: Scale, style: Style) -> None:
+    """Numbers to the left of a plot and below it: mV, and ms from R."""
+    font, colour = style.font(style.caption), style.palette.colour("soft_ink")
+    left_room, line = axis_room(style)
+    step_mv = next(s for s in LEVEL_STEPS_MV if (scale.high_mv - scale.low_mv) / s < 7)
+    levels = np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv
+    for level in levels.tolist():
+        text = f"{signed(level, 1)}{NARROW}mV" if level else f"0{NARROW}mV"
+        top = float(scale.y(level)) - line / 2
+        box = QRectF(scale.rect.left() - left_room, top, left_room - 4, line)
+        draw_text(painter, box, text, font, colour, RIGHT)
+    steps = np.arange(np.ceil(scale.first_ms / TIME_STEP_MS), scale.last_ms / TIME_STEP_MS)
+    for time in (steps * TIME_STEP_MS).tolist():
+        text = "R" if time == 0 else f"{signed(time, 0)}{NARROW}ms"
+        width = text_width(text, font) + 2
+        box = QRectF(float(scale.x(time)) - width / 2, scale.rect.bottom(), width, line)
+        draw_text(painter, box, text, font, colour, CENTRE)
 
 
 def draw_overlay(
@@ -115,7 +147,7 @@ def draw_lead_cell(
     )
     draw_text(painter, foot, changes, word_font, palette.colour("soft_ink"), RIGHT)
     plot = QRectF(inside.left(), top.bottom(), inside.width(), foot.top() - top.bottom())
-    draw_overlay(painter, plot, comparison, lead, style, every=5)
+    draw_overlay(painter, plot, comparison, lead, style, every=CELL_EVERY)
 
 
 def _changes(comparison: Comparison, lead: str) -> list[str]:
@@ -143,7 +175,7 @@ def draw_difference(
     scale = Scale(rect, first, last, low, high)
     painter.save()
     painter.setClipRect(rect)
-    draw_grid(painter, scale, style, every=5)
+    draw_grid(painter, scale, style, every=CELL_EVERY)
     x = scale.x(laid.time_ms[shown])
     noise = bands.noise_mv[row, shown]
     fill_between(painter, x, scale.y(reach[0]), scale.y(reach[1]), palette.band("reach"))

@@ -6,7 +6,7 @@ from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRectF, Qt
 from PySide6.QtGui import QPageLayout, QPageSize, QPainter, QPdfWriter, QPen
 
 from app.drawing.chest_map import draw_chest_map
-from app.drawing.lead_plots import draw_lead_cell
+from app.drawing.lead_plots import GRID_OF_CELLS, draw_lead_cell
 from app.drawing.pen import draw_mark, draw_paragraph, draw_text
 from app.report.page import Page, mm, start_page
 from app.report.tables import Column, draw_table
@@ -180,7 +180,7 @@ def _legend(page: Page) -> None:
         draw_text(painter, box, text, font, palette.colour("soft_ink"))
         x += mm(38)
     box = QRectF(x, strip.top(), strip.right() - x, strip.height())
-    draw_text(painter, box, "grid 0.2 s × 0.5 mV", font, palette.colour("soft_ink"))
+    draw_text(painter, box, GRID_OF_CELLS, font, palette.colour("soft_ink"))
 
 
 def _evidence_page(page: Page, comparison: Comparison) -> None:
@@ -259,8 +259,8 @@ def _placement(page: Page, comparison: Comparison) -> None:
     )
     if tail is not None:
         text += (
-            " Placement and repeat noise alone give changes at least this unusual in "
-            f"{_share(tail)} of cases."
+            " With the shift that the QRS points to, placement and repeat noise alone give "
+            f"ST and T changes at least this unusual in {_share(tail)} of cases."
         )
     note = QRectF(map_rect.right() + mm(2.0), side.top, strip.right() - map_rect.right() - mm(2), 0)
     draw_paragraph(painter, note, text, style.font(style.caption), style.palette.colour("soft_ink"))

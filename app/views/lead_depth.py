@@ -8,6 +8,8 @@ from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from app.drawing.lead_plots import (
     RIGHT,
+    axis_room,
+    draw_axes,
     draw_difference,
     draw_fiducials,
     draw_overlay,
@@ -22,9 +24,9 @@ LEGEND = (
     ("earlier", "earlier"),
     ("later", "later"),
     ("noise", "repeat noise"),
-    ("reach", "placement reach"),
+    ("reach", "reach"),
 )
-DIFFERENCE_LEGEND = (("ink", "change"), ("in_reach", "expected from the shift"))
+DIFFERENCE_LEGEND = (("ink", "change: later less earlier"), ("in_reach", "expected"))
 
 
 class LeadDepth(QWidget):
@@ -60,21 +62,21 @@ class LeadDepth(QWidget):
         self._draw_heading(painter, inside, style, lead, result.judgement)
 
         reason_height = self._reason_height(painter, inside, style, result.reason)
-        plots = inside.adjusted(0, 32, 0, -reason_height - 8)
+        across, below = axis_room(style)
+        plots = inside.adjusted(across, 32, 0, -reason_height - 8)
         labels = QRectF(plots.left(), plots.top(), plots.width(), 18)
         legend = 20.0
-        overlay_height = (plots.height() - 18 - 2 * legend) * 0.60
-        overlay = QRectF(plots.left(), labels.bottom(), plots.width(), overlay_height)
+        for_plots = plots.height() - labels.height() - 2 * (below + legend)
+        overlay = QRectF(plots.left(), labels.bottom(), plots.width(), for_plots * 0.60)
         scale = draw_overlay(painter, overlay, comparison, lead, style, every=1)
+        draw_axes(painter, scale, style)
         draw_fiducials(painter, scale, comparison, style, labels)
-        row = QRectF(plots.left(), overlay.bottom() + 2, plots.width(), legend)
-        _draw_legend(painter, row, style, LEGEND, "grid 40 ms × 0.1 mV")
-        below = QRectF(
-            plots.left(), row.bottom(), plots.width(), plots.bottom() - row.bottom() - legend
-        )
-        draw_difference(painter, below, comparison, lead, style)
-        row = QRectF(plots.left(), below.bottom() + 2, plots.width(), legend)
-        _draw_legend(painter, row, style, DIFFERENCE_LEGEND, "later less earlier")
+        row = QRectF(inside.left(), overlay.bottom() + below, inside.width(), legend)
+        _draw_legend(painter, row, style, LEGEND)
+        difference = QRectF(plots.left(), row.bottom(), plots.width(), for_plots * 0.40)
+        draw_axes(painter, draw_difference(painter, difference, comparison, lead, style), style)
+        row.moveTop(difference.bottom() + below)
+        _draw_legend(painter, row, style, DIFFERENCE_LEGEND)
         painter.end()
 
     def _draw_heading(
@@ -104,9 +106,8 @@ def _draw_legend(
     row: QRectF,
     style: Style,
     items: tuple[tuple[str, str], ...],
-    note: str,
 ) -> None:
-    """Short samples of lines and bands with their names, a note at the right."""
+    """Short samples of lines and bands with their names."""
     palette, font = style.palette, style.font(style.caption)
     x, middle = row.left(), row.center().y()
     for role, text in items:
@@ -120,5 +121,3 @@ def _draw_legend(
         box = QRectF(x + 21, row.top(), width, row.height())
         draw_text(painter, box, text, font, palette.colour("soft_ink"))
         x += 21 + width + 12
-    if x + text_width(note, font) <= row.right():
-        draw_text(painter, row, note, font, palette.colour("soft_ink"), RIGHT)

@@ -6,7 +6,8 @@ from PySide6.QtCore import QRectF, QSize, Qt
 from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent
 from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
 
-from app.drawing.lead_plots import draw_lead_cell
+from app.drawing.lead_plots import GRID_OF_CELLS, draw_lead_cell
+from app.drawing.pen import draw_text
 from app.state.bench_state import BenchState
 from app.views.theme import screen_style
 from core.wording.judgements import WORDS
@@ -19,6 +20,7 @@ BY_WALL = (
     ("V4", "V5", "aVR"),
 )
 GAP = 4
+NOTE_HEIGHT = 18
 
 
 class LeadWall(QWidget):
@@ -44,7 +46,7 @@ class LeadWall(QWidget):
         """Where a cell lies."""
         rows, columns = len(BY_WALL), len(BY_WALL[0])
         width = (self.width() - (columns - 1) * GAP) / columns
-        height = (self.height() - (rows - 1) * GAP) / rows
+        height = (self.height() - NOTE_HEIGHT - (rows - 1) * GAP) / rows
         return QRectF(column * (width + GAP), row * (height + GAP), width, height)
 
     def lead_at(self, x: float, y: float) -> str | None:
@@ -73,6 +75,9 @@ class LeadWall(QWidget):
                     style,
                     selected=lead == self._state.lead,
                 )
+        note = QRectF(0, self.height() - NOTE_HEIGHT, self.width(), NOTE_HEIGHT)
+        font = style.font(style.caption)
+        draw_text(painter, note, GRID_OF_CELLS, font, style.palette.colour("soft_ink"))
         painter.end()
 
     def mousePressEvent(self, event: QMouseEvent) -> None:

@@ -42,13 +42,14 @@ def beat_mv(
         return 0.5 - 0.5 * np.cos(2 * np.pi * share)
 
     # ST falls back to the baseline under the T wave.
-    st = np.interp(since_ms, [S_ON_MS, QRS_OFF_MS, T_PEAK_MS, T_OFF_MS], [0.0, 1.0, 1.0, 0.0]) * st_mv
+    st = (
+        np.interp(since_ms, [S_ON_MS, QRS_OFF_MS, T_PEAK_MS, T_OFF_MS], [0.0, 1.0, 1.0, 0.0])
+        * st_mv
+    )
     leads = []
     for r, s, t, p in zip(R_MV, S_MV, T_MV, P_MV, strict=True):
         qrs = r * hump(0.0, R_OFF_MS) + s * hump(S_ON_MS, QRS_OFF_MS)
-        leads.append(
-            qrs + st + p * hump(P_ON_MS, P_OFF_MS) + t_scale * t * hump(T_ON_MS, T_OFF_MS)
-        )
+        leads.append(qrs + st + p * hump(P_ON_MS, P_OFF_MS) + t_scale * t * hump(T_ON_MS, T_OFF_MS))
     return np.array(leads)
 
 

@@ -53,7 +53,15 @@ def test_an_impossible_voltage(tmp_path):
 
 @pytest.mark.parametrize(
     ("word", "years"),
-    [("81", 81), ("042Y", 42), ("018M", 1.5), ("52w", 0.997), ("", None), ("old", None), ("300", None)],
+    [
+        ("81", 81),
+        ("042Y", 42),
+        ("018M", 1.5),
+        ("52w", 0.997),
+        ("", None),
+        ("old", None),
+        ("300", None),
+    ],
 )
 def test_ages_as_files_write_them(word, years):
     # Days are counted as 365.25 a year, so weeks come out a little under.

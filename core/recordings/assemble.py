@@ -12,12 +12,14 @@ from numpy.typing import NDArray
 from core.errors import RecordingError
 from core.recordings.leads import (
     CHEST_LEADS,
+    FURTHER_LEADS,
     LIMB_LEADS,
     TWELVE_LEADS,
     can_derive_limb_leads,
     complete_limb_leads,
 )
 from core.recordings.recording import Recording, Source, Subject
+from core.recordings.resampling import resampled
 from core.wording import notices as say
 
 # Below 100 Hz the QRS is not resolved; above 8 kHz no electrocardiograph records.
@@ -29,11 +31,22 @@ LARGEST_PLAUSIBLE_MV = 1000.0
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Channel:
-    """One lead as a reader found it: samples in mV (NaN where missing), and its step."""
+    """One lead as a reader found it.
+
+    Attributes
+    ----------
+    samples_mv : ndarray, shape (n_samples,)
+        NaN where the file holds no sample.
+    counts_per_mv : float
+        Steps of the file's quantisation in one mV.
+    sampling_rate_hz : float, optional
+        Where it differs from the other leads'.
+    """
 
     lead: str
     samples_mv: NDArray[np.float64]
     counts_per_mv: float
+    sampling_rate_hz: float | None = None
 
 
 def assemble_recording(
@@ -46,6 +59,8 @@ def assemble_recording(
 ) -> Recording:
     """Check the channels and order them as the twelve leads, deriving limb leads if needed.
 
+    Channels of different rates are brought to the highest.
+
     Raises
     ------
     RecordingError
@@ -53,45 +68,75 @@ def assemble_recording(
         voltages are impossible.
     """
     name = source.name
-    low_hz, high_hz = SAMPLING_RATE_RANGE_HZ
-    if not (math.isfinite(sampling_rate_hz) and low_hz <= sampling_rate_hz <= high_hz):
-        raise RecordingError(
-            f"{name}: the file states {sampling_rate_hz:g} samples a second; "
-            f"{low_hz:g} to {high_hz:g} can be read. Export the recording again at 500 Hz."
-        )
     by_lead: dict[str, Channel] = {}
     for channel in channels:
+        _refuse_rate(name, channel.sampling_rate_hz or sampling_rate_hz)
         by_lead.setdefault(channel.lead, channel)
     _refuse_missing_leads(name, by_lead)
-    longest = max(channel.samples_mv.size for channel in by_lead.values())
-    if longest == 0:
+    if max(channel.samples_mv.size for channel in by_lead.values()) == 0:
         raise RecordingError(f"{name}: the file holds no samples. Export the recording again.")
     for channel in by_lead.values():
         _refuse_impossible_voltage(name, channel)
+    rate_hz = max(channel.sampling_rate_hz or sampling_rate_hz for channel in by_lead.values())
+    samples = on_one_time_axis(by_lead, sampling_rate_hz, rate_hz)
 
-    limb = complete_limb_leads({lead: c.samples_mv for lead, c in by_lead.items()})
+    limb = complete_limb_leads(samples)
     present = tuple(lead for lead in TWELVE_LEADS if lead in by_lead)
     derived = tuple(lead for lead in LIMB_LEADS if lead not in by_lead)
-    columns = [limb[lead] if lead in limb else by_lead[lead].samples_mv for lead in TWELVE_LEADS]
+    columns = [limb[lead] if lead in limb else samples[lead] for lead in TWELVE_LEADS]
     # Halving in the limb-lead algebra needs twice the steps of the leads it starts from.
     finest = 2 * max(channel.counts_per_mv for channel in by_lead.values())
     steps = tuple(
         by_lead[lead].counts_per_mv if lead in by_lead else finest for lead in TWELVE_LEADS
     )
-    notices = (say.limb_leads_derived(derived),) if derived else ()
-    signal_mv = np.stack(columns, axis=1)
-    signal_mv.setflags(write=False)
+    further = tuple(lead for lead in FURTHER_LEADS if lead in by_lead)
     return Recording(
-        signal_mv=signal_mv,
-        sampling_rate_hz=float(sampling_rate_hz),
+        signal_mv=_frozen(columns),
+        sampling_rate_hz=float(rate_hz),
         leads_present=present,
         leads_derived=derived,
         counts_per_mv=steps,
         source=source,
         subject=subject,
         recorded_at=recorded_at,
-        notices=notices,
+        notices=(say.limb_leads_derived(derived),) if derived else (),
+        further_leads=further,
+        further_mv=_frozen([samples[lead] for lead in further]),
     )
+
+
+def on_one_time_axis(
+    by_lead: dict[str, Channel], usual_rate_hz: float, rate_hz: float
+) -> dict[str, NDArray[np.float64]]:
+    """Samples of every channel at one rate and of one length; NaN after a channel's end."""
+    samples = {}
+    for lead, channel in by_lead.items():
+        own_hz = channel.sampling_rate_hz or usual_rate_hz
+        samples[lead] = (
+            channel.samples_mv
+            if own_hz == rate_hz
+            else resampled(channel.samples_mv, own_hz, rate_hz)
+        )
+    longest = max(values.size for values in samples.values())
+    return {
+        lead: np.pad(values, (0, longest - values.size), constant_values=np.nan)
+        for lead, values in samples.items()
+    }
+
+
+def _frozen(columns: list[NDArray[np.float64]]) -> NDArray[np.float64]:
+    table = np.stack(columns, axis=1) if columns else np.empty((0, 0))
+    table.setflags(write=False)
+    return table
+
+
+def _refuse_rate(name: str, rate_hz: float) -> None:
+    low_hz, high_hz = SAMPLING_RATE_RANGE_HZ
+    if not (math.isfinite(rate_hz) and low_hz <= rate_hz <= high_hz):
+        raise RecordingError(
+            f"{name}: the file states {rate_hz:g} samples a second; "
+            f"{low_hz:g} to {high_hz:g} can be read. Export the recording again at 500 Hz."
+        )
 
 
 def _refuse_missing_leads(name: str, by_lead: dict[str, Channel]) -> None:

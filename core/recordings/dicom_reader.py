@@ -19,6 +19,7 @@ from numpy.typing import NDArray
 from core.errors import RecordingError
 from core.recordings.assemble import Channel, assemble_recording
 from core.recordings.fingerprint import sha256_of_files
+from core.recordings.lead_numbers import lead_of_code
 from core.recordings.leads import (
     CHEST_LEADS,
     can_derive_limb_leads,
@@ -33,18 +34,6 @@ GENERAL_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.2"
 
 # UCUM codes; the writing with a micro sign is common in real files.
 MILLIVOLTS_PER_UNIT = {"uV": 1e-3, "µV": 1e-3, "μV": 1e-3, "mV": 1.0, "V": 1e3, "nV": 1e-6}
-
-# Numbers of the leads in SCP-ECG; MDC codes are 131072 more (DICOM CID 3001).
-_LEAD_OF_SCP_NUMBER = {
-    1: "I",
-    2: "II",
-    **{number: f"V{number - 2}" for number in range(3, 9)},
-    61: "III",
-    62: "aVR",
-    63: "aVL",
-    64: "aVF",
-}
-_MDC_PARTITION = 131072
 
 
 def looks_like_dicom(start: bytes) -> bool:
@@ -213,20 +202,17 @@ def _lead_of(definition: Any) -> tuple[str, float] | None:
     for code in definition.get("ChannelSourceSequence") or []:
         by_code = _lead_of_code(str(code.get("CodeValue") or ""))
         if by_code is not None:
-            return by_code, 1.0
+            return by_code
         by_meaning = lead_in_sentence(str(code.get("CodeMeaning") or ""))
         if by_meaning is not None:
             return by_meaning
     return lead_in_sentence(str(definition.get("ChannelLabel") or ""))
 
 
-def _lead_of_code(code: str) -> str | None:
+def _lead_of_code(code: str) -> tuple[str, float] | None:
     """The lead of ``"2:131079"`` or ``"2:7"`` (MDC) and of ``"5.6.3-9-7"`` (SCP-ECG)."""
     found = re.fullmatch(r"(?:2:|5\.6\.3-9-)?(\d+)", code.strip())
-    if found is None:
-        return None
-    number = int(found[1])
-    return _LEAD_OF_SCP_NUMBER.get(number - _MDC_PARTITION if number > _MDC_PARTITION else number)
+    return None if found is None else lead_of_code(int(found[1]))
 
 
 def _unit_mv(name: str, lead: str, definition: Any) -> float:

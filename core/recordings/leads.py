@@ -17,13 +17,17 @@ LIMB_LEADS = ("I", "II", "III", "aVR", "aVL", "aVF")
 CHEST_LEADS = ("V1", "V2", "V3", "V4", "V5", "V6")
 TWELVE_LEADS = LIMB_LEADS + CHEST_LEADS
 INDEPENDENT_LEADS = ("I", "II", *CHEST_LEADS)
+# Right and posterior chest leads and the Frank leads: kept and measured, not judged.
+FURTHER_LEADS = ("V3R", "V4R", "V5R", "V6R", "V7", "V8", "V9", "X", "Y", "Z")
 
 # Rows follow LIMB_LEADS, columns are I and II.
 LIMB_FROM_I_AND_II: NDArray[np.float64] = np.array(
     [[1.0, 0.0], [0.0, 1.0], [-1.0, 1.0], [-0.5, -0.5], [1.0, -0.5], [-0.5, 1.0]]
 )
 
-_BY_LOWER_NAME = {lead.lower(): lead for lead in TWELVE_LEADS}
+_BY_LOWER_NAME = {lead.lower(): lead for lead in (*TWELVE_LEADS, *FURTHER_LEADS)} | {
+    f"v{axis.lower()}": axis for axis in "XYZ"
+}
 # Words that stand before a lead's name in headers: "Lead I", "ECG V1", "MLII" (a limb lead
 # recorded from electrodes on the torso, as WFDB records name it).
 _BEFORE_NAME = re.compile(r"^(?:ecg|lead|ekg)[\s_:.-]*|^ml(?=i)", re.IGNORECASE)
@@ -40,7 +44,7 @@ def lead_of_label(label: str) -> tuple[str, float] | None:
     Returns
     -------
     tuple of (lead, sign), or None
-        None where the label is none of the twelve leads.
+        None where the label is neither one of the twelve nor one of `FURTHER_LEADS`.
     """
     text = label.strip()
     sign = 1.0

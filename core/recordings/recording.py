@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
-from datetime import datetime
+from datetime import datetime, timedelta
 
 import numpy as np
 from numpy.typing import NDArray
@@ -52,6 +52,10 @@ class Recording:
         Which of the twelve the file held, and which were computed from two limb leads.
     counts_per_mv : tuple of float, length 12
         Steps of the file's own quantisation in one mV; a written copy keeps them.
+    further_leads : tuple of str
+        Leads beyond the twelve that the file held: right and posterior chest leads, X, Y, Z.
+    further_mv : ndarray, shape (n_samples, n_further)
+        Columns in the order of `further_leads`.
     """
 
     signal_mv: NDArray[np.float64]
@@ -63,6 +67,8 @@ class Recording:
     subject: Subject = field(default_factory=Subject)
     recorded_at: datetime | None = None
     notices: tuple[Notice, ...] = ()
+    further_leads: tuple[str, ...] = ()
+    further_mv: NDArray[np.float64] = field(default_factory=lambda: np.empty((0, 0)))
 
     @property
     def leads(self) -> tuple[str, ...]:
@@ -82,3 +88,15 @@ class Recording:
     def with_signal(self, signal_mv: NDArray[np.float64], *, name: str) -> Recording:
         """The same recording with another signal, under another source name."""
         return replace(self, signal_mv=signal_mv, source=replace(self.source, name=name))
+
+    def stretch(self, start_s: float, stop_s: float) -> Recording:
+        """A part of the recording, from one time to another."""
+        first, last = (round(at * self.sampling_rate_hz) for at in (start_s, stop_s))
+        return replace(
+            self,
+            signal_mv=self.signal_mv[first:last],
+            further_mv=self.further_mv[first:last],
+            recorded_at=None
+            if self.recorded_at is None
+            else self.recorded_at + timedelta(seconds=start_s),
+        )

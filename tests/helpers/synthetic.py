@@ -87,10 +87,3 @@ def as_recording(
         counts_per_mv=(1000.0,) * 12,
         source=Source(name, "synthetic", "0" * 64),
     )
-
-
-def part(recording: Recording, start_s: float, stop_s: float) -> Recording:
-    """A stretch of a recording."""
-    rate = recording.sampling_rate_hz
-    stretch = recording.signal_mv[round(start_s * rate) : round(stop_s * rate)]
-    return recording.with_signal(stretch, name=f"{recording.source.name}-part")

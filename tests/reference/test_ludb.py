@@ -11,7 +11,6 @@ from core import compare
 from core.beats.detection import detect_beats
 from core.recordings.leads import independent_from_twelve
 from tests.helpers.ludb import FOLDER, RATE_HZ, SAME_BEAT_S, ludb_recording, marked_beats_s
-from tests.helpers.synthetic import part
 
 pytestmark = [
     pytest.mark.skipif(not FOLDER.is_dir(), reason="../shared/data/ludb is not here"),
@@ -44,7 +43,7 @@ def test_halves_of_a_regular_recording_are_steady():
         times = marked_beats_s(number)
         if np.std(np.diff(times)) > 0.1 * np.mean(np.diff(times)):
             continue  # atrial fibrillation: five seconds hold too few like intervals
-        halves = part(recording, 0.0, 5.0), part(recording, 5.0, 10.0)
+        halves = recording.stretch(0.0, 5.0), recording.stretch(5.0, 10.0)
         judgements.update(lead.judgement for lead in compare(*halves).leads.values())
     assert sum(judgements.values()) >= 60
     assert judgements["steady"] >= 0.95 * sum(judgements.values())

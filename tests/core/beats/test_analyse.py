@@ -7,7 +7,7 @@ from core.beats.analyse import analyse_beats
 from core.beats.kinds import premature
 from core.beats.representative import beat_locked_part, representative_of
 from core.errors import NotEnoughBeats
-from tests.helpers.synthetic import as_recording, part, synthetic
+from tests.helpers.synthetic import as_recording, synthetic
 
 
 def test_beats_lie_where_they_were_made():
@@ -22,7 +22,7 @@ def test_beats_lie_where_they_were_made():
 
 def test_the_ends_of_the_recording_are_left_out():
     made = synthetic(noise_mv=0.01)
-    cut = part(made.recording, 0.2, 9.0)
+    cut = made.recording.stretch(0.2, 9.0)
     reasons = [beat.why_not for beat in analyse_beats(cut).beats]
     assert reasons[0] == "cut off by the end of the recording"
     assert set(reasons[1:-1]) == {None}
@@ -89,7 +89,7 @@ def test_a_gap_in_the_samples_costs_its_beat_and_no_more():
 def test_too_short_a_recording_is_a_clear_no(seconds):
     made = synthetic()
     with pytest.raises(NotEnoughBeats, match="at least 3"):
-        analyse_beats(part(made.recording, 0.0, seconds))
+        analyse_beats(made.recording.stretch(0.0, seconds))
 
 
 def test_silence_is_a_clear_no():

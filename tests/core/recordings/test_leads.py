@@ -31,7 +31,7 @@ def twelve() -> np.ndarray:
         ("-aVR", ("aVR", -1.0)),
         ("ECG V1", ("V1", 1.0)),
         ("v6", ("V6", 1.0)),
-        ("vx", None),
+        ("vx", ("X", 1.0)),
         ("V10", None),
         ("pleth", None),
     ],

@@ -1,0 +1,45 @@
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+from core.quality.lead_quality import grade_leads
+from core.recordings.leads import TWELVE_LEADS
+from core.recordings.recording import Recording
+from tests.helpers.synthetic import synthetic
+
+
+def spoiled(lead: str, spoil) -> Recording:
+    recording = synthetic().recording
+    signal = recording.signal_mv.copy()
+    column = TWELVE_LEADS.index(lead)
+    signal[:, column] = spoil(signal[:, column])
+    return recording.with_signal(signal, name="spoiled")
+
+
+def test_a_clean_recording_is_usable_in_every_lead():
+    assert all(grade.usable for grade in grade_leads(synthetic().recording))
+
+
+@pytest.mark.parametrize(
+    ("spoil", "reason"),
+    [
+        (lambda x: np.zeros_like(x), "flat"),
+        (lambda x: np.full_like(x, 3.2), "flat"),
+        (lambda x: np.full_like(x, np.nan), "samples missing"),
+        (lambda x: np.where(np.arange(x.size) < x.size // 3, np.nan, x), "samples missing"),
+        (lambda x: np.clip(x, None, 0.1), "clipped"),
+        (lambda x: np.clip(x, -0.02, None), "clipped"),
+    ],
+)
+@pytest.mark.parametrize("lead", ["II", "V2"])
+def test_a_spoiled_lead_and_no_other_is_unusable_and_says_why(lead, spoil, reason):
+    grades = {grade.lead: grade for grade in grade_leads(spoiled(lead, spoil))}
+    assert (grades[lead].usable, grades[lead].reason) == (False, reason)
+    assert all(grade.usable for name, grade in grades.items() if name != lead)
+
+
+def test_coarse_steps_are_not_clipping():
+    """At 20 uV a step a lead rests on its extreme for several samples of each beat."""
+    coarse = spoiled("V2", lambda x: np.rint(x / 0.02) * 0.02)
+    assert all(grade.usable for grade in grade_leads(coarse))

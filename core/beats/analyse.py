@@ -6,7 +6,7 @@ the beats are cleanest when the wander is. A few rounds settle both.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,12 +17,14 @@ from core.beats.kinds import SAME_SHAPE, dominant_beat, premature, shape_correla
 from core.beats.representative import beat_locked_part, representative_of
 from core.conditioning.gaps import bridge_gaps
 from core.conditioning.mains import estimate_mains
+from core.conditioning.pacing import bridge_spikes, find_spikes
 from core.conditioning.wander import estimate_wander
 from core.errors import NotEnoughBeats
 from core.recordings.leads import independent_from_twelve
 from core.recordings.recording import Recording
 
 FEWEST_BEATS = 3
+FEWEST_SPIKES = 3
 QRS_HALF_S = 0.07  # half of the stretch that is compared and aligned
 LARGEST_LAG_S = 0.06
 ROUNDS = 3
@@ -63,6 +65,8 @@ class BeatAnalysis:
     representative_mv : ndarray, shape (8, n)
     r_index : int
         Sample of R in the representative beat.
+    spikes : ndarray of int
+        Samples of the pacing spikes that were bridged.
     """
 
     sampling_rate_hz: float
@@ -71,6 +75,12 @@ class BeatAnalysis:
     aligned_mv: NDArray[np.float64]
     representative_mv: NDArray[np.float64]
     r_index: int
+    spikes: NDArray[np.int64] = field(default_factory=lambda: np.empty(0, dtype=np.int64))
+
+    @property
+    def paced(self) -> bool:
+        """Whether the recording holds pacing spikes, rather than a stray artefact or two."""
+        return self.spikes.size >= FEWEST_SPIKES
 
     @property
     def used(self) -> tuple[int, ...]:
@@ -92,11 +102,13 @@ def analyse_beats(recording: Recording) -> BeatAnalysis:
     raw = bridge_gaps(np.where(missing, 0.0, raw), missing)
     # A lead that holds nothing at all is a matter of its own grade, not of every beat.
     gap = np.asarray(missing[~missing.all(axis=1)].any(axis=0))
+    spikes = find_spikes(raw, rate)
+    raw = bridge_spikes(raw, spikes, rate)
 
     centres = detect_beats(raw, rate)
     if centres.size < FEWEST_BEATS:
         raise NotEnoughBeats(_too_few(name, recording.duration_s, centres.size))
-    return _Rounds(name, rate, raw, gap, centres).settle()
+    return replace(_Rounds(name, rate, raw, gap, centres).settle(), spikes=spikes)
 
 
 def _too_few(name: str, duration_s: float, n: int) -> str:

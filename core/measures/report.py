@@ -290,4 +290,6 @@ def _notices(
         found.append(say.limb_leads_disagree(contradiction_mv))
     if points.fiducials.p_onset is None:
         found.append(say.no_p_wave())
+    if analysis.paced:
+        found.append(say.paced())
     return tuple(found)

@@ -112,3 +112,13 @@ def limb_leads_disagree(largest_mv: float) -> Notice:
         f"The limb leads contradict each other by up to {largest_mv:.2f} mV: the file was rescaled "
         "lead by lead or filtered unevenly. Export the recording again without rescaling.",
     )
+
+
+def paced() -> Notice:
+    """The heart was paced."""
+    return Notice(
+        "paced",
+        "caution",
+        "Pacing spikes: paced beats have their own ST and T, and a change of pacing changes them. "
+        "Compare only if both recordings are paced in the same way.",
+    )

@@ -1,0 +1,50 @@
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+from core.comparison.witness import interchanges_between
+from core.quality.interchange import chest_interchanges, limb_interchanges
+from tests.helpers.synthetic import beat_mv
+
+TIME_MS = np.arange(-200.0, 450.0, 2.0)
+
+
+def beats(seed: int = 4, noise_mv: float = 0.008) -> tuple[np.ndarray, np.ndarray]:
+    """Two representative beats of one heart: noise, and 5 % more amplitude."""
+    rng = np.random.default_rng(seed)
+    clean = beat_mv(TIME_MS)
+    return tuple(gain * clean + rng.normal(0, noise_mv, clean.shape) for gain in (1.0, 1.05))
+
+
+@pytest.mark.parametrize("seed", range(5))
+def test_two_recordings_as_they_should_be_name_nothing(seed):
+    assert interchanges_between(*beats(seed)) == ()
+
+
+@pytest.mark.parametrize("one", limb_interchanges(), ids=lambda one: "-".join(one.electrodes))
+@pytest.mark.parametrize("in_later", [True, False])
+def test_a_limb_interchange_is_named_whichever_recording_holds_it(one, in_later):
+    earlier, later = beats()
+    pair = (earlier, one.matrix @ later) if in_later else (one.matrix @ earlier, later)
+    assert [found.electrodes for found in interchanges_between(*pair)] == [one.electrodes]
+
+
+@pytest.mark.parametrize("one", chest_interchanges(), ids=lambda one: "-".join(one.electrodes))
+def test_a_chest_interchange_is_named(one):
+    earlier, later = beats()
+    found = interchanges_between(earlier, one.matrix @ later)
+    assert [other.electrodes for other in found] == [one.electrodes]
+
+
+def test_both_kinds_at_once_are_named():
+    earlier, later = beats()
+    limb, chest = limb_interchanges()[0], chest_interchanges()[5]
+    found = interchanges_between(earlier, chest.matrix @ limb.matrix @ later)
+    assert [one.electrodes for one in found] == [limb.electrodes, chest.electrodes]
+
+
+def test_new_st_elevation_is_no_interchange():
+    earlier, later = beats()
+    injured = later + 0.3 * np.sign(beat_mv(TIME_MS)[:, 60:61]) * ((TIME_MS > 90) & (TIME_MS < 300))
+    assert interchanges_between(earlier, injured) == ()

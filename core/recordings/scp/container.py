@@ -47,6 +47,8 @@ def read_sections(name: str, record: bytes) -> dict[int, Section]:
     RecordingError
         If a checksum, a length or a pointer does not agree with the bytes.
     """
+    if len(record) < _RECORD_HEADER_BYTES:
+        raise _damaged(name, "it is cut off within its header")
     stated_crc, length = struct.unpack_from("<HI", record)
     if length > len(record):
         raise _damaged(name, f"it states {length} bytes and holds {len(record)}")

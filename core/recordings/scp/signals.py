@@ -20,6 +20,8 @@ LEAD_DEFINITIONS, BEAT_LOCATIONS, REFERENCE_BEAT, RHYTHM, LONG_RHYTHM = 3, 4, 5,
 HUFFMAN_TABLES = 2
 MOST_LEADS = 85
 LONGEST_RECORD_SAMPLES = 100_000_000
+# Leads recorded one group after another span so many times the longest of them at most.
+FARTHEST_APART = 12
 
 
 class SignalError(ValueError):
@@ -126,6 +128,9 @@ def _leads(content: bytes) -> tuple[list[_Lead], bool]:
         if not 1 <= first <= last <= LONGEST_RECORD_SAMPLES:
             raise SignalError(f"a lead runs from sample {first} to {last}")
         leads.append(_Lead(number, first, last))
+    span = max(lead.last for lead in leads) - min(lead.first for lead in leads) + 1
+    if span > FARTHEST_APART * max(lead.n_samples for lead in leads):
+        raise SignalError("its leads lie far apart in time")
     return leads, bool(flags & 1)
 
 

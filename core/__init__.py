@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from core.comparison.compare import compare
 from core.comparison.results import Comparison
-from core.errors import ComparisonError, NotEnoughBeats, RecordingError
-from core.measures.report import RecordingReport, measure
+from core.errors import ComparisonError, NotComparable, NotEnoughBeats, RecordingError
+from core.measures.report import RecordingReport
+from core.placement.checked import measure_and_check as measure
 from core.placement.moved import ElectrodeMove, move_electrodes
 from core.recordings.read import read_recording
 from core.recordings.recording import Recording
@@ -15,6 +16,7 @@ __all__ = [
     "Comparison",
     "ComparisonError",
     "ElectrodeMove",
+    "NotComparable",
     "NotEnoughBeats",
     "Recording",
     "RecordingError",

@@ -4,6 +4,7 @@ SamespotError
   RecordingError     the file cannot be used (also a ValueError)
   ComparisonError    the recording was read, but cannot be measured or compared
     NotEnoughBeats   too short, too noisy or too irregular to measure
+    NotComparable    a stop stands between the two recordings, such as two identifiers
     Stopped          the caller asked for the work to end
   ModelError         the torso ensemble is missing, damaged or of another version
 
@@ -12,6 +13,8 @@ wrong, where, and what would mend it.
 """
 
 from __future__ import annotations
+
+from core.notices import Notice
 
 
 class SamespotError(Exception):
@@ -28,6 +31,25 @@ class ComparisonError(SamespotError):
 
 class NotEnoughBeats(ComparisonError):  # noqa: N818, it reads as what happened
     """Fewer usable beats than a measurement needs."""
+
+
+class NotComparable(ComparisonError):  # noqa: N818, as above
+    """A stop stands between the two recordings; the caller may lift it.
+
+    Attributes
+    ----------
+    notices : tuple of Notice
+        All that was found, the stops first.
+    """
+
+    def __init__(self, message: str, notices: tuple[Notice, ...]) -> None:
+        super().__init__(message)
+        self.notices = notices
+
+    @property
+    def stops(self) -> tuple[str, ...]:
+        """Codes that `Settings.lifted_stops` would have to name."""
+        return tuple(notice.code for notice in self.notices if notice.severity == "stop")
 
 
 class Stopped(ComparisonError):  # noqa: N818, as above

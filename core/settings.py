@@ -59,6 +59,7 @@ class Settings:
     confidence: float = 0.95  # of every range
     draws: int = 2000  # electrode shifts drawn for the reach
     seed: int = 1
+    lifted_stops: tuple[str, ...] = ()  # codes of notices that would end a comparison
     repeat_floor: dict[str, RepeatFloor] = field(default_factory=_floors)
 
     def __post_init__(self) -> None:

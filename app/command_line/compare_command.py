@@ -12,7 +12,7 @@ from app.command_line.summaries import comparison_summary
 from core import Comparison, Settings, Spread, compare, read_recording
 from core.comparison.refused import refused_comparison
 from core.comparison.table import comparison_csv
-from core.errors import ComparisonError
+from core.errors import ComparisonError, NotComparable
 
 
 def add_to(commands: Any) -> None:
@@ -30,13 +30,21 @@ def add_to(commands: Any) -> None:
         help="how far electrodes are off their sites, standard deviation in each direction "
         f"(default {Spread().up:g})",
     )
+    parser.add_argument(
+        "--lift-stop",
+        metavar="CODE",
+        action="append",
+        default=[],
+        help="compare in spite of the stop of this name, such as identifiers-differ; "
+        "the result says so",
+    )
     parser.set_defaults(run=run)
 
 
 def run(options: argparse.Namespace) -> None:
     """Compare, and write what was asked for; a readable summary if nothing was."""
     refuse_two_to_standard_output(options.json, options.pdf, options.csv)
-    settings = _settings(options.spread_mm)
+    settings = _settings(options.spread_mm, tuple(options.lift_stop))
     earlier, later = read_recording(options.earlier), read_recording(options.later)
     try:
         comparison = compare(earlier, later, settings)
@@ -44,6 +52,9 @@ def run(options: argparse.Namespace) -> None:
         if options.json:
             refused = refused_comparison(earlier, later, settings, error)
             write_output(options.json, as_json(refused))
+        if isinstance(error, NotComparable):
+            lifts = " ".join(f"--lift-stop {code}" for code in error.stops)
+            raise ComparisonError(f"{error} (To compare all the same: {lifts}.)") from error
         raise
     if options.json:
         write_output(options.json, as_json(comparison.to_dict()))
@@ -63,10 +74,11 @@ def report_pdf(comparison: Comparison) -> bytes:
     return make_report(comparison)
 
 
-def _settings(spread_mm: float | None) -> Settings:
-    if spread_mm is None:
-        return Settings()
-    try:
-        return Settings(spread_mm=Spread(left=spread_mm, up=spread_mm))
-    except ValueError as error:
-        raise CommandFailed(f"--spread-mm: {error}") from error
+def _settings(spread_mm: float | None, lifted_stops: tuple[str, ...]) -> Settings:
+    spread = Spread()
+    if spread_mm is not None:
+        try:
+            spread = Spread(left=spread_mm, up=spread_mm)
+        except ValueError as error:
+            raise CommandFailed(f"--spread-mm: {error}") from error
+    return Settings(spread_mm=spread, lifted_stops=lifted_stops)

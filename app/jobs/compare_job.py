@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import logging
 import threading
+import traceback
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
@@ -11,7 +12,7 @@ from pathlib import Path
 from PySide6.QtCore import QObject, QRunnable, QThreadPool, Signal
 
 from core import Comparison, Settings, compare, read_recording
-from core.errors import SamespotError, Stopped
+from core.errors import NotComparable, SamespotError, Stopped
 
 log = logging.getLogger(__name__)
 
@@ -57,7 +58,7 @@ class CompareRunner(QObject):
 
     progressed = Signal(float, str)
     finished = Signal(object)
-    failed = Signal(str)
+    failed = Signal(str, tuple)  # the reason, and the stops that may be lifted
     _came = Signal(object, str, object)
 
     def __init__(self, work: Work = compare_files) -> None:
@@ -95,7 +96,7 @@ class CompareRunner(QObject):
         if kind == "result":
             self.finished.emit(content)
         else:
-            self.failed.emit(content)
+            self.failed.emit(*content)  # type: ignore[misc]
 
 
 class _Task(QRunnable):
@@ -114,17 +115,20 @@ class _Task(QRunnable):
             result = self._work(self._request, self._report, self.stop.is_set)
         except Stopped:
             return
+        except NotComparable as error:
+            self._tell(self, "failure", (str(error), error.stops))
         except SamespotError as error:
-            self._tell(self, "failure", str(error))
-        except Exception as error:  # a window must outlive any fault of the engine
-            log.exception("a comparison failed")
-            self._tell(
-                self,
-                "failure",
+            self._tell(self, "failure", (str(error), ()))
+        except Exception as error:  # noqa: BLE001, a window must outlive any fault of the engine
+            # Where it happened, without the message, which may name a file or a person.
+            where = "".join(traceback.format_tb(error.__traceback__))
+            log.error("a comparison failed by %s\n%s", type(error).__name__, where)  # noqa: TRY400
+            reason = (
                 f"The comparison failed by a fault of the program ({type(error).__name__}). "
                 "The recordings are untouched; please report it with the details that the "
-                "program printed.",
+                "program printed."
             )
+            self._tell(self, "failure", (reason, ()))
         else:
             self._tell(self, "result", result)
 

@@ -36,6 +36,7 @@ class BenchState(QObject):
         self.later: Path | None = None
         self.comparison: Comparison | None = None
         self.refusal = ""
+        self.liftable_stops: tuple[str, ...] = ()
         self.progress = 0.0
         self.progress_words = ""
         self.lead = "V2"
@@ -54,7 +55,7 @@ class BenchState(QObject):
         """Choose recordings; a comparison of others is put away."""
         self.earlier, self.later = earlier, later
         self.comparison = None
-        self.refusal = ""
+        self.refusal, self.liftable_stops = "", ()
         self._enter(Phase.EMPTY)
         self.pair_changed.emit()
 
@@ -76,9 +77,9 @@ class BenchState(QObject):
         self._enter(Phase.JUDGED)
         self.select_lead(weightiest_lead(comparison))
 
-    def refuse(self, reason: str) -> None:
-        """The pair cannot be compared."""
-        self.refusal = reason
+    def refuse(self, reason: str, liftable_stops: tuple[str, ...] = ()) -> None:
+        """The pair cannot be compared, unless the reader lifts what stops it."""
+        self.refusal, self.liftable_stops = reason, liftable_stops
         self._enter(Phase.REFUSED)
 
     def stop(self) -> None:

@@ -54,6 +54,7 @@ class BenchWindow(QMainWindow):
         self.runner.finished.connect(self.state.finish)
         self.runner.failed.connect(self.state.refuse)
         self.verdict.cancelled.connect(self.stop_comparing)
+        self.verdict.lift_wanted.connect(self.lift_stops)
         self.start_view.pair_wanted.connect(self.open_pair)
         self.state.phase_changed.connect(self._follow_phase)
         self._follow_phase()
@@ -128,12 +129,17 @@ class BenchWindow(QMainWindow):
         self.state.choose(Path(earlier), Path(later))
         self._compare(order_by_time=order_by_time)
 
-    def _compare(self, *, order_by_time: bool = False) -> None:
+    def _compare(self, *, order_by_time: bool = False, lifted_stops: tuple[str, ...] = ()) -> None:
         earlier, later = self.state.earlier, self.state.later
         if earlier is None or later is None:
             return
         self.state.begin()
-        self.runner.start(CompareRequest(earlier, later, Settings(), order_by_time))
+        settings = Settings(lifted_stops=lifted_stops)
+        self.runner.start(CompareRequest(earlier, later, settings, order_by_time))
+
+    def lift_stops(self) -> None:
+        """Compare in spite of what stopped this pair, this once."""
+        self._compare(lifted_stops=self.state.liftable_stops)
 
     def stop_comparing(self) -> None:
         """End the running comparison; the pair stays chosen."""

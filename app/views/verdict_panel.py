@@ -23,6 +23,7 @@ class VerdictPanel(QWidget):
     """The overall sentence; the progress while there is none; the reason where there can't be."""
 
     cancelled = Signal()
+    lift_wanted = Signal()
 
     def __init__(self, state: BenchState) -> None:
         super().__init__()
@@ -35,6 +36,8 @@ class VerdictPanel(QWidget):
         self.bar.setFixedHeight(8)
         self.cancel = QPushButton("Stop")
         self.cancel.clicked.connect(self.cancelled)
+        self.lift = QPushButton("Compare all the same")
+        self.lift.clicked.connect(self.lift_wanted)
 
         words = QVBoxLayout()
         words.setSpacing(4)
@@ -46,6 +49,7 @@ class VerdictPanel(QWidget):
         layout.setSpacing(16)
         layout.addLayout(words, 1)
         layout.addWidget(self.cancel)
+        layout.addWidget(self.lift)
 
         state.phase_changed.connect(self._refresh)
         state.progress_changed.connect(self._refresh)
@@ -56,6 +60,7 @@ class VerdictPanel(QWidget):
         working = state.phase is Phase.WORKING
         self.bar.setVisible(working)
         self.cancel.setVisible(working)
+        self.lift.setVisible(state.phase is Phase.REFUSED and bool(state.liftable_stops))
         if working:
             self._show("Comparing the two recordings", f"{state.progress_words} …")
             self.bar.setValue(round(100 * state.progress))

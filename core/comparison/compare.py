@@ -24,6 +24,7 @@ from core.comparison.judge import (
 )
 from core.comparison.laid import lay_beats
 from core.comparison.pairing import pair_beats
+from core.comparison.put_right import put_right
 from core.comparison.results import (
     NOTHING,
     Comparison,
@@ -38,7 +39,8 @@ from core.errors import Stopped
 from core.json_numbers import number_or_none
 from core.measures.lead_values import COMPARED
 from core.measures.repeat_noise import repeat_noise
-from core.measures.report import RecordingReport, measure
+from core.measures.report import RecordingReport
+from core.placement.checked import measure_and_check
 from core.placement.estimate import ShiftPosterior, estimate_shifts
 from core.placement.expected import Expected, expected_changes, tail_probability
 from core.placement.foretell import INDEPENDENT_ROWS
@@ -83,6 +85,8 @@ def compare(
     ------
     NotEnoughBeats
         If either recording has fewer than three usable beats of one kind.
+    NotComparable
+        If a stop stands between the two that the settings don't lift.
     Stopped
         If `should_stop` said so.
     """
@@ -96,10 +100,12 @@ def compare(
 
     rng = np.random.default_rng(settings.seed)
     step(0.0, "measuring the earlier recording")
-    first = measure(earlier, settings)
+    first = measure_and_check(earlier, settings)
     step(0.2, "measuring the later recording")
-    second = measure(later, settings)
+    second = measure_and_check(later, settings)
     step(0.4, "laying the beats on each other")
+    first, second, chest_interchange = put_right(first, second, settings)
+    notices = pair_notices(first, second, settings, chest_interchange)
     laid = lay_beats(first, second)
     pairs = pair_beats(first, second, laid)
     noise = repeat_noise(first, second, settings)
@@ -150,7 +156,7 @@ def compare(
         leads=leads,
         placement=placement,
         overall=_overall(leads, placement),
-        notices=pair_notices(first, second),
+        notices=notices,
     )
 
 

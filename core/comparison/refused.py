@@ -7,7 +7,7 @@ from typing import Any
 
 from core.comparison.judge import NOT_JUDGED
 from core.comparison.results import NOTHING, LeadComparison, Overall, Placement, head
-from core.errors import ComparisonError
+from core.errors import ComparisonError, NotComparable
 from core.measures.lead_values import COMPARED
 from core.measures.report import describe
 from core.notices import Notice
@@ -24,6 +24,9 @@ def refused_comparison(
 ) -> dict[str, Any]:
     """What `Comparison.to_dict` would give, with the reason in place of the numbers."""
     reason = str(error)
+    notices: tuple[Notice, ...] = (Notice("not-comparable", "stop", reason),)
+    if isinstance(error, NotComparable):
+        notices = error.notices
     lead = LeadComparison(
         dict.fromkeys(COMPARED, NOTHING), NOT_JUDGED, say.reason_not_judged("see the notice")
     )
@@ -40,7 +43,7 @@ def refused_comparison(
         "leads": {name: lead.to_dict() for name in TWELVE_LEADS},
         "placement": placement.to_dict(),
         "overall": Overall(NOT_JUDGED, reason, say.next_step({})).to_dict(),
-        "notices": [Notice("not-comparable", "stop", reason).to_dict()],
+        "notices": [notice.to_dict() for notice in notices],
         "caveat": PLACEMENT_CAVEAT,
         "cautions": list(CAUTIONS),
     }

@@ -27,40 +27,48 @@ LEAST_SHARE, MOST_SHARE = 0.2, 0.5
 NOISE_MV = 0.004
 
 
-def interchanges_between(
+def limb_interchange_between(
     earlier_mv: NDArray[np.float64], later_mv: NDArray[np.float64]
-) -> tuple[Interchange, ...]:
-    """Interchanges that turn one recording's leads into the other's.
+) -> Interchange | None:
+    """The limb interchange that turns one recording's leads into the other's, if there is one.
 
     Parameters
     ----------
     earlier_mv, later_mv : ndarray, shape (8, n)
-        Representative beats from P to T, laid on each other in time.
+        Representative beats from P to T, laid on each other in time by their chest leads.
 
     Returns
     -------
-    tuple of Interchange
-        At most one of limb and one of chest electrodes. Which of the two recordings holds it,
-        two leads that took each other's places cannot say.
+    Interchange or None
+        ``later = matrix @ earlier``. Which of the two recordings holds it, the pair cannot say.
     """
-    found = []
     limb = _best(limb_interchanges(), earlier_mv, later_mv)
-    if _times_better(limb, earlier_mv, later_mv) > LIMB_TIMES:
-        found.append(limb)
-        later_mv = limb.undone(later_mv)
+    return limb if _times_better(limb, earlier_mv, later_mv) > LIMB_TIMES else None
+
+
+def chest_interchange_between(
+    earlier_mv: NDArray[np.float64], later_mv: NDArray[np.float64]
+) -> Interchange | None:
+    """Two chest leads that took each other's places between the recordings, if any did.
+
+    Parameters
+    ----------
+    earlier_mv, later_mv : ndarray, shape (8, n)
+        Representative beats from P to T, laid on each other by their limb leads, which agree.
+    """
     chest = _best(chest_interchanges(), earlier_mv, later_mv)
     times = _times_better(chest, earlier_mv, later_mv)
     if times > CERTAIN_TIMES:
-        found.append(chest)
-    elif times > CHEST_TIMES:
-        allowed = np.clip(
-            TIMES_LIMB_DIFFERENCE * _share(earlier_mv[:2], later_mv[:2]), LEAST_SHARE, MOST_SHARE
-        )
-        stayed = np.setdiff1d(np.arange(2, 8), chest.rows)
-        undone = chest.undone(later_mv)
-        if all(_share(earlier_mv[rows], undone[rows]) < allowed for rows in (stayed, chest.rows)):
-            found.append(chest)
-    return tuple(found)
+        return chest
+    if times <= CHEST_TIMES:
+        return None
+    allowed = np.clip(
+        TIMES_LIMB_DIFFERENCE * _share(earlier_mv[:2], later_mv[:2]), LEAST_SHARE, MOST_SHARE
+    )
+    stayed = np.setdiff1d(np.arange(2, 8), chest.rows)
+    undone = chest.undone(later_mv)
+    agree = all(_share(earlier_mv[rows], undone[rows]) < allowed for rows in (stayed, chest.rows))
+    return chest if agree else None
 
 
 def _best(

@@ -16,6 +16,8 @@ NARROW_S, WIDE_S = 0.006, 0.016
 # 0.15 to 2.3 mV, are at least twice as prominent over the narrow span as over the wide, and the
 # tracing steps by less than half of a spike across it; no QRS comes near all three.
 SMALLEST_MV = 0.10
+# A spike and its decay.
+BRIDGED_S = 0.010
 NARROWNESS = 1.5
 LARGEST_STEP = 0.5
 
@@ -64,7 +66,7 @@ def bridge_spikes(
     if spikes.size == 0:
         return signal_mv
     bridged = signal_mv.copy()
-    reach = max(2, round(NARROW_S * sampling_rate_hz))
+    reach = max(2, round(BRIDGED_S * sampling_rate_hz))
     for spike in spikes.tolist():
         first, last = max(0, spike - reach), min(signal_mv.shape[1] - 1, spike + reach)
         share = np.linspace(0.0, 1.0, last - first + 1)

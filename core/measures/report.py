@@ -187,6 +187,10 @@ def describe(recording: Recording, notices: tuple[Notice, ...] = ()) -> dict[str
         "duration_s": recording.duration_s,
         "leads_present": list(recording.leads_present),
         "leads_derived": list(recording.leads_derived),
+        "further_leads": list(recording.further_leads),
+        "interchange_undone": list(recording.interchange_undone),
+        "filters": recording.filters.to_dict(),
+        "electrode_placement": recording.electrode_placement,
         "beats": [],
         **dict.fromkeys(
             (

@@ -7,14 +7,22 @@ leads. Each is a fixed 8 x 8 matrix on leads I, II, V1 to V6.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 from itertools import combinations
 
 import numpy as np
 from numpy.typing import NDArray
 
-from core.recordings.leads import CHEST_LEADS, INDEPENDENT_LEADS, LIMB_LEADS
+from core.recordings.leads import (
+    CHEST_LEADS,
+    INDEPENDENT_LEADS,
+    LIMB_LEADS,
+    TWELVE_LEADS,
+    independent_from_twelve,
+    twelve_from_independent,
+)
+from core.recordings.recording import Recording
 
 LIMB_ELECTRODES = ("RA", "LA", "LL")
 # Potentials of RA, LA and LL against their mean, from leads I and II.
@@ -54,9 +62,26 @@ class Interchange:
             return LIMB_LEADS
         return tuple(INDEPENDENT_LEADS[row] for row in self.rows)
 
+    @property
+    def reversed(self) -> Interchange:
+        """The interchange that takes the leads back."""
+        return Interchange(
+            self.electrodes, np.asarray(np.linalg.inv(self.matrix), dtype=np.float64)
+        )
+
     def undone(self, leads_mv: NDArray[np.float64]) -> NDArray[np.float64]:
         """Leads as they should be, shape (8, n), from leads as recorded."""
         return np.asarray(np.linalg.inv(self.matrix) @ leads_mv)
+
+
+def with_interchange_undone(recording: Recording, one: Interchange) -> Recording:
+    """A recording with its leads put right, and marked so."""
+    leads = one.undone(independent_from_twelve(recording.signal_mv.T))
+    signal_mv = recording.signal_mv.copy()
+    columns = [TWELVE_LEADS.index(lead) for lead in one.leads]
+    signal_mv[:, columns] = twelve_from_independent(leads).T[:, columns]
+    signal_mv.setflags(write=False)
+    return replace(recording, signal_mv=signal_mv, interchange_undone=one.electrodes)
 
 
 @cache

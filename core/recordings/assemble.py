@@ -18,7 +18,7 @@ from core.recordings.leads import (
     can_derive_limb_leads,
     complete_limb_leads,
 )
-from core.recordings.recording import Recording, Source, Subject
+from core.recordings.recording import Filters, Recording, Source, Subject
 from core.recordings.resampling import resampled
 from core.wording import notices as say
 
@@ -56,6 +56,8 @@ def assemble_recording(
     source: Source,
     subject: Subject,
     recorded_at: datetime | None,
+    filters: Filters | None = None,
+    electrode_placement: str | None = None,
 ) -> Recording:
     """Check the channels and order them as the twelve leads, deriving limb leads if needed.
 
@@ -100,6 +102,8 @@ def assemble_recording(
         subject=subject,
         recorded_at=recorded_at,
         notices=(say.limb_leads_derived(derived),) if derived else (),
+        filters=filters or Filters(),
+        electrode_placement=electrode_placement,
         further_leads=further,
         further_mv=_frozen([samples[lead] for lead in further]),
     )

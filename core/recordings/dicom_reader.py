@@ -25,13 +25,15 @@ from core.recordings.leads import (
     can_derive_limb_leads,
     lead_in_sentence,
 )
-from core.recordings.recording import Recording, Source, Subject
+from core.recordings.recording import Filters, Recording, Source, Subject
 from core.recordings.subject_words import age_of_word, sex_of_word
 
 FORMAT_NAME = "DICOM"
 TWELVE_LEAD_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.1"
 GENERAL_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.2"
 
+# Codes of CID 3263 (MDC partition 10): standard, Mason-Likar, raised one interspace, and others.
+ELECTRODE_PLACEMENTS = frozenset(str(code) for code in range(666624, 666656))
 # UCUM codes; the writing with a micro sign is common in real files.
 MILLIVOLTS_PER_UNIT = {"uV": 1e-3, "µV": 1e-3, "μV": 1e-3, "mV": 1.0, "V": 1e3, "nV": 1e-6}
 
@@ -50,6 +52,7 @@ class _Group:
     n_samples: int
     offset_ms: float
     original: bool
+    filters: Filters
 
     @property
     def complete(self) -> bool:
@@ -106,6 +109,8 @@ def read_dicom(path: Path) -> Recording:
         source=Source(name, FORMAT_NAME, sha256_of_files([path])),
         subject=subject,
         recorded_at=recorded_at,
+        filters=group.filters,
+        electrode_placement=_electrode_placement(dataset),
     )
 
 
@@ -168,6 +173,21 @@ def _decode_group(name: str, dataset: Any, index: int) -> _Group:
         n_samples=int(stored.shape[0]),
         offset_ms=float(group.get("MultiplexGroupTimeOffset") or 0.0),
         original=str(group.get("WaveformOriginality") or "ORIGINAL").upper() == "ORIGINAL",
+        filters=_filters(group.ChannelDefinitionSequence),
+    )
+
+
+def _filters(definitions: Any) -> Filters:
+    """The narrowest band that any channel states: its most filtered lead limits a recording."""
+
+    def stated(keyword: str) -> list[float]:
+        numbers = [_number(definition, keyword, 0.0) for definition in definitions]
+        return [number for number in numbers if np.isfinite(number) and number > 0]
+
+    return Filters(
+        high_pass_hz=max(stated("FilterLowFrequency"), default=None),
+        low_pass_hz=min(stated("FilterHighFrequency"), default=None),
+        notch_hz=max(stated("NotchFilterFrequency"), default=None),
     )
 
 
@@ -241,7 +261,18 @@ def _subject(dataset: Any) -> Subject:
         name=_readable_name(dataset.get("PatientName")),
         sex=sex_of_word(str(dataset.get("PatientSex") or "")),
         age_years=age_years,
+        born_on=born,
     )
+
+
+def _electrode_placement(dataset: Any) -> str | None:
+    """Code of the electrode placement that the acquisition context states."""
+    for item in dataset.get("AcquisitionContextSequence") or []:
+        for code in item.get("ConceptCodeSequence") or []:
+            value = str(code.get("CodeValue") or "").removeprefix("10:")
+            if value in ELECTRODE_PLACEMENTS:
+                return value
+    return None
 
 
 def _readable_name(person: Any) -> str | None:

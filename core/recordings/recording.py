@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
-from datetime import datetime, timedelta
+from datetime import date, datetime, timedelta
 
 import numpy as np
 from numpy.typing import NDArray
@@ -26,6 +26,23 @@ class Source:
 
 
 @dataclass(frozen=True, slots=True)
+class Filters:
+    """Cutoffs that the file states for its signal, in Hz; None where it says nothing."""
+
+    high_pass_hz: float | None = None
+    low_pass_hz: float | None = None
+    notch_hz: float | None = None
+
+    def to_dict(self) -> dict[str, float | None]:
+        """The filters as JSON writes them."""
+        return {
+            "high_pass_hz": self.high_pass_hz,
+            "low_pass_hz": self.low_pass_hz,
+            "notch_hz": self.notch_hz,
+        }
+
+
+@dataclass(frozen=True, slots=True)
 class Subject:
     """What the file said of the person; None where it said nothing."""
 
@@ -33,9 +50,10 @@ class Subject:
     name: str | None = None
     sex: str | None = None  # "female", "male" or None
     age_years: float | None = None
+    born_on: date | None = None
 
     def to_dict(self) -> dict[str, str | float | None]:
-        """The subject as JSON writes it: the name stays out."""
+        """The subject as JSON writes it: name and birth date stay out."""
         return {"id": self.id, "sex": self.sex, "age_years": self.age_years}
 
 
@@ -52,6 +70,12 @@ class Recording:
         Which of the twelve the file held, and which were computed from two limb leads.
     counts_per_mv : tuple of float, length 12
         Steps of the file's own quantisation in one mV; a written copy keeps them.
+    filters : Filters
+        What the file states; nothing is done about them here.
+    electrode_placement : str, optional
+        Code of the placement that the file states (DICOM CID 3263).
+    interchange_undone : tuple of str
+        Electrodes whose interchange was undone; empty where the leads are as recorded.
     further_leads : tuple of str
         Leads beyond the twelve that the file held: right and posterior chest leads, X, Y, Z.
     further_mv : ndarray, shape (n_samples, n_further)
@@ -67,6 +91,9 @@ class Recording:
     subject: Subject = field(default_factory=Subject)
     recorded_at: datetime | None = None
     notices: tuple[Notice, ...] = ()
+    filters: Filters = field(default_factory=Filters)
+    electrode_placement: str | None = None
+    interchange_undone: tuple[str, ...] = ()
     further_leads: tuple[str, ...] = ()
     further_mv: NDArray[np.float64] = field(default_factory=lambda: np.empty((0, 0)))
 

@@ -47,6 +47,16 @@ def no_p_wave() -> Notice:
     )
 
 
+def other_identifier() -> Notice:
+    """The files name two persons."""
+    return Notice(
+        "identifiers-differ",
+        "stop",
+        "The two files state different identifiers. Compare recordings of one person only; if "
+        "both are of one person all the same, lift this stop.",
+    )
+
+
 def another_person(what: str) -> Notice:
     """The two recordings may not be of one person."""
     return Notice(
@@ -54,6 +64,84 @@ def another_person(what: str) -> Notice:
         "caution",
         f"The two files state different {what}. Make sure that both are of one person; "
         "otherwise the comparison means nothing.",
+    )
+
+
+def monitoring_filter(which: Sequence[str], high_pass_hz: float) -> Notice:
+    """A high-pass that bends ST."""
+    return Notice(
+        "monitoring-filter",
+        "stop",
+        f"{joined(which)} recording filtered from {high_pass_hz:g} Hz up: such a filter bends ST "
+        "unless it has no phase. Record again with the diagnostic filter (0.05 Hz), or lift this "
+        "stop if the recorder's filter is known to keep ST.",
+    )
+
+
+def high_pass_differs(earlier_hz: float, later_hz: float, lead: str, shift_mv: float) -> Notice:
+    """Two high-pass filters, and what the difference does to J at most."""
+    return Notice(
+        "high-pass-differs",
+        "caution",
+        f"High-pass filter {earlier_hz:g} Hz against {later_hz:g} Hz: that alone may move J by "
+        f"{1000 * abs(shift_mv):.0f} µV in {lead}, where it moves most. Record both with the same "
+        "filter.",
+    )
+
+
+def low_pass_differs(earlier_hz: float, later_hz: float) -> Notice:
+    """Two low-pass filters."""
+    return Notice(
+        "low-pass-differs",
+        "caution",
+        f"Low-pass filter {earlier_hz:g} Hz against {later_hz:g} Hz: R and S differ by up to "
+        "0.2 mV for that alone, and the shift estimate with them. Record both with the same "
+        "filter.",
+    )
+
+
+def electrodes_elsewhere() -> Notice:
+    """The files state different placements of the electrodes."""
+    return Notice(
+        "placement-stated-differs",
+        "caution",
+        "The two files state different electrode placements. Use the same placement in both.",
+    )
+
+
+def interchanged(electrodes: Sequence[str]) -> Notice:
+    """Limb electrodes that the other recording shows to be interchanged; undone."""
+    return Notice(
+        "limb-electrodes-interchanged",
+        "caution",
+        f"{joined(electrodes)} look interchanged: undone, the limb leads agree with the other "
+        "recording's. They are compared and shown as if put right. Check the cables and record "
+        "again.",
+    )
+
+
+def chest_interchanged(electrodes: Sequence[str]) -> Notice:
+    """Chest electrodes that look interchanged; which recording holds it cannot be said."""
+    return Notice(
+        "chest-electrodes-interchanged",
+        "caution",
+        f"{joined(electrodes)} look interchanged in one of the two recordings, for the leads then "
+        "agree. Nothing was put right. Check the cables and record again.",
+    )
+
+
+def looks_interchanged(electrodes: Sequence[str], *, of_limbs: bool) -> Notice:
+    """Electrodes that look interchanged by one recording's own evidence."""
+    subject = (
+        f"The limb electrodes look interchanged, most likely {joined(electrodes)}"
+        if of_limbs
+        else f"{joined(electrodes)} look interchanged"
+    )
+    return Notice(
+        "looks-interchanged",
+        "caution",
+        f"{subject}, by this recording's own leads alone; an unusual heart can look so too. "
+        "Check the cables and record again.",
     )
 
 
@@ -73,6 +161,51 @@ def order_reversed() -> Notice:
         "caution",
         "The recording given as later is the older one. Swap the two.",
     )
+
+
+def age_against_dates(off_years: float) -> Notice:
+    """The ages do not fit the time between the recordings."""
+    return Notice(
+        "age-against-dates",
+        "caution",
+        f"The ages stated and the dates of the recordings differ by {off_years:.0f} years. Make "
+        "sure that both are of one person and that the recorders' clocks are right.",
+    )
+
+
+def paced_in_one(which: str) -> Notice:
+    """Only one of the recordings is paced."""
+    return Notice(
+        "paced-in-one",
+        "caution",
+        f"Only the {which} recording holds pacing spikes: its ST and T cannot be compared with "
+        "those of unpaced beats.",
+    )
+
+
+def block_in_one(which: str) -> Notice:
+    """Only one of the recordings has a wide QRS."""
+    return Notice(
+        "wide-qrs-in-one",
+        "caution",
+        f"The QRS is wide (120 ms or more) in the {which} recording alone, as in bundle branch "
+        "block: ST and T follow the conduction, and the comparison tells little of ischaemia.",
+    )
+
+
+def irregular(which: str) -> Notice:
+    """An irregular rhythm without P waves."""
+    return Notice(
+        "irregular-rhythm",
+        "caution",
+        f"{which} recording: irregular rhythm without a P wave, as in atrial fibrillation: ST and "
+        "T vary from beat to beat, and repeat noise with them.",
+    )
+
+
+def stop_lifted(notice: Notice) -> Notice:
+    """A stop that the user has lifted."""
+    return Notice(notice.code, "stop", f"{notice.text} This stop was lifted by the user.")
 
 
 def not_adult() -> Notice:

@@ -43,6 +43,7 @@ def read_scp(path: Path) -> Recording:
         source=Source(path.name, FORMAT_NAME, sha256_of_files([path])),
         subject=said.subject,
         recorded_at=said.recorded_at,
+        filters=said.filters,
     )
 
 

@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from datetime import date, datetime
 
-from core.recordings.recording import Subject
+from core.recordings.recording import Filters, Subject
 from core.recordings.subject_words import OLDEST_YEARS
 
 LAST_NAME, FIRST_NAME, PATIENT_ID, AGE, BIRTH_DATE, SEX = 0, 1, 2, 4, 5, 8
@@ -19,12 +19,11 @@ _SEXES = {1: "male", 2: "female"}
 
 @dataclass(frozen=True, slots=True)
 class Said:
-    """Subject, time, and the filters that the recorder applied (Hz; None where unsaid)."""
+    """Subject, time, and the filters that the recorder applied."""
 
     subject: Subject
     recorded_at: datetime | None
-    high_pass_hz: float | None
-    low_pass_hz: float | None
+    filters: Filters
 
 
 def read_header(content: bytes) -> Said:
@@ -32,7 +31,7 @@ def read_header(content: bytes) -> Said:
     said: dict[int, bytes] = {}
     for tag, value in _tags(content):
         said.setdefault(tag, value)
-    recorded_on = _date(said.get(RECORDED_ON, b""))
+    recorded_on, born_on = (_date(said.get(tag, b"")) for tag in (RECORDED_ON, BIRTH_DATE))
     name = " ".join(
         word for word in (_text(said.get(FIRST_NAME)), _text(said.get(LAST_NAME))) if word
     )
@@ -41,11 +40,14 @@ def read_header(content: bytes) -> Said:
             id=_text(said.get(PATIENT_ID)),
             name=name or None,
             sex=_SEXES.get(said[SEX][0]) if said.get(SEX) else None,
-            age_years=_age(said.get(AGE, b""), _date(said.get(BIRTH_DATE, b"")), recorded_on),
+            age_years=_age(said.get(AGE, b""), born_on, recorded_on),
+            born_on=born_on,
         ),
         recorded_at=_moment(recorded_on, said.get(RECORDED_AT, b"")),
-        high_pass_hz=_number(said.get(HIGH_PASS), 0.01),
-        low_pass_hz=_number(said.get(LOW_PASS), 1.0),
+        filters=Filters(
+            high_pass_hz=_number(said.get(HIGH_PASS), 0.01),
+            low_pass_hz=_number(said.get(LOW_PASS), 1.0),
+        ),
     )
 
 

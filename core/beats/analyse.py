@@ -58,6 +58,11 @@ class BeatAnalysis:
     ----------
     signal_mv : ndarray, shape (8, n_samples)
         Wander and mains interference taken out.
+    wander_mv, hum_mv : ndarray, shape (8, n_samples)
+        What was taken out.
+    residual_mv : ndarray, shape (8, n_samples)
+        The recording less the representative beat laid at every beat; straight lines where
+        that says nothing.
     beats : tuple of Beat
         Every QRS found, in order.
     aligned_mv : ndarray, shape (n_used, 8, n)
@@ -71,6 +76,9 @@ class BeatAnalysis:
 
     sampling_rate_hz: float
     signal_mv: NDArray[np.float64]
+    wander_mv: NDArray[np.float64]
+    hum_mv: NDArray[np.float64]
+    residual_mv: NDArray[np.float64]
     beats: tuple[Beat, ...]
     aligned_mv: NDArray[np.float64]
     representative_mv: NDArray[np.float64]
@@ -172,6 +180,9 @@ class _Rounds:
         return BeatAnalysis(
             sampling_rate_hz=self.rate,
             signal_mv=self.signal,
+            wander_mv=self.wander,
+            hum_mv=self.hum,
+            residual_mv=bridge_gaps(*self._residual(representative)),
             beats=tuple(
                 Beat(float(centre / self.rate), reason is None, reason)
                 for centre, reason in zip(self.centres, why_not, strict=True)
@@ -248,7 +259,8 @@ class _Rounds:
 
     def _take_out_wander(self, representative: NDArray[np.float64]) -> None:
         residual, foreign = self._residual(representative)
-        self.signal = self.raw - estimate_wander(residual, foreign, sampling_rate_hz=self.rate)
+        self.wander = estimate_wander(residual, foreign, sampling_rate_hz=self.rate)
+        self.signal = self.raw - self.wander
 
     def _take_out_mains(self, representative: NDArray[np.float64], used: NDArray[np.int64]) -> None:
         whole = self._whole()
@@ -260,9 +272,8 @@ class _Rounds:
             return signals - beat_locked_part(mean, self.before, order, self.n_samples)
 
         residual, foreign = self._residual(representative)
-        self.signal = self.signal - estimate_mains(
-            residual, foreign, less_locked_part, sampling_rate_hz=self.rate
-        )
+        self.hum = estimate_mains(residual, foreign, less_locked_part, sampling_rate_hz=self.rate)
+        self.signal = self.signal - self.hum
 
     def _noisy(
         self, aligned: NDArray[np.float64], representative: NDArray[np.float64]

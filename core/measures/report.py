@@ -22,6 +22,7 @@ from core.measures.lead_values import (
 )
 from core.measures.vectors import angle_between_deg, frontal_axis_deg, kors_vector
 from core.notices import Notice
+from core.quality.faults import Fault, find_faults
 from core.quality.lead_quality import LeadQuality, grade_leads
 from core.quality.limb_algebra import limb_lead_contradiction_mv
 from core.recordings.leads import TWELVE_LEADS, independent_from_twelve, twelve_from_independent
@@ -248,6 +249,13 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     residual_mv = twelve_from_independent(analysis.aligned_mv - analysis.representative_mv)
     _, _, q_mv = qrs_waves(beat_mv[:, points.qrs_window()])
     quality = grade_leads(recording)
+    faults = find_faults(
+        TWELVE_LEADS,
+        twelve_from_independent(analysis.residual_mv),
+        twelve_from_independent(analysis.wander_mv),
+        twelve_from_independent(analysis.hum_mv),
+        sampling_rate_hz=rate,
+    )
     return RecordingReport(
         recording=recording,
         analysis=analysis,
@@ -261,7 +269,7 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         noise_uv=1000.0 * np.sqrt(np.mean(residual_mv**2, axis=(0, 2))),
         quality=quality,
         rr_s=float(np.mean(np.diff([beat.r_time_s for beat in analysis.beats]))),
-        notices=(*recording.notices, *_notices(recording, analysis, quality, points)),
+        notices=(*recording.notices, *_notices(recording, analysis, quality, points, faults)),
     )
 
 
@@ -280,7 +288,11 @@ def _p_wave_mv(beat_mv: NDArray[np.float64], points: Points) -> NDArray[np.float
 
 
 def _notices(
-    recording: Recording, analysis: BeatAnalysis, quality: tuple[LeadQuality, ...], points: Points
+    recording: Recording,
+    analysis: BeatAnalysis,
+    quality: tuple[LeadQuality, ...],
+    points: Points,
+    faults: tuple[Fault, ...],
 ) -> tuple[Notice, ...]:
     found = []
     left_out = [beat.why_not for beat in analysis.beats if beat.why_not is not None]
@@ -289,6 +301,10 @@ def _notices(
     unusable = [(grade.lead, grade.reason) for grade in quality if not grade.usable]
     if unusable:
         found.append(say.leads_unusable(unusable))
+    unusable_leads = [lead for lead, _ in unusable]
+    disturbed = [fault for fault in faults if fault.lead not in unusable_leads]
+    if disturbed:
+        found.append(say.leads_disturbed([(f.kind, f.lead, f.size_mv) for f in disturbed]))
     contradiction_mv = limb_lead_contradiction_mv(recording)
     if contradiction_mv is not None:
         found.append(say.limb_leads_disagree(contradiction_mv))

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from core.notices import Notice
-from core.wording.lists import joined
+from core.wording.lists import joined, named
 
 
 def limb_leads_derived(derived: Sequence[str]) -> Notice:
@@ -35,6 +35,22 @@ def leads_unusable(unusable: Sequence[tuple[str, str | None]]) -> Notice:
         "leads-unusable",
         "caution",
         f"No usable tracing in {joined(named)}. Check the electrodes and record again.",
+    )
+
+
+def leads_disturbed(faults: Sequence[tuple[str, str, float]]) -> Notice:
+    """Hum, noise, wander or steps in some leads: kind, lead and size in mV."""
+    told = []
+    for kind in dict.fromkeys(kind for kind, _, _ in faults):
+        leads = [lead for other, lead, _ in faults if other == kind]
+        largest = max(size for other, _, size in faults if other == kind)
+        told.append(f"{kind} up to {largest:.2f} mV in {named(leads)}")
+    sentence = "; ".join(told)
+    return Notice(
+        "leads-disturbed",
+        "info",
+        f"{sentence[0].upper()}{sentence[1:]}. Hum and wander are taken out, and repeat noise is "
+        "wider where beats differ; a quieter recording tells more.",
     )
 
 

@@ -1,0 +1,26 @@
+"""How much of a recording is held in memory at once."""
+
+from __future__ import annotations
+
+from core.errors import RecordingError
+
+# Somewhat more than an hour of twelve leads at 500 Hz: 190 MB as doubles, of which reading
+# holds a few copies. No resting recording comes near it.
+MOST_VALUES = 24_000_000
+
+
+def refuse_too_long(name: str, *, n_leads: int, n_samples: int, rate_hz: float) -> None:
+    """Refuse what would not fit, before anything is allocated for it.
+
+    Raises
+    ------
+    RecordingError
+        If leads times samples are more than `MOST_VALUES`.
+    """
+    if n_leads * n_samples <= MOST_VALUES:
+        return
+    longest_s = MOST_VALUES / n_leads / rate_hz
+    raise RecordingError(
+        f"{name}: {n_leads} leads of {n_samples / rate_hz:.0f} s at {rate_hz:g} Hz are too much "
+        f"to hold in memory. Cut out a stretch of at most {longest_s:.0f} s and open that."
+    )

@@ -72,4 +72,4 @@ class Settings:
 
     def to_dict(self) -> dict[str, Any]:
         """The settings as JSON writes them."""
-        return asdict(self)
+        return asdict(self) | {"lifted_stops": list(self.lifted_stops)}

@@ -12,7 +12,10 @@ CHECKS = (
     ("style", ["-m", "ruff", "check", "."]),
     ("format", ["-m", "ruff", "format", "--check", "."]),
     ("types", ["-m", "mypy"]),
-    ("import directions", ["-c", "from importlinter.cli import lint_imports_command as run; run()"]),
+    (
+        "import directions",
+        ["-c", "from importlinter.cli import lint_imports_command as run; run()"],
+    ),
     ("tests", ["-m", "pytest"]),
 )
 

@@ -11,6 +11,7 @@ from __future__ import annotations
 
 import math
 import re
+from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import BinaryIO
 
@@ -29,6 +30,9 @@ _LABEL_WIDTH, _NUMBER_WIDTH = 16, 8
 _N_RECORDS = slice(236, 244)
 # EDF advises 61 440 bytes. A 10 s tracing in one record is common, an hour in one is not.
 LARGEST_RECORD_BYTES = 32 << 20
+BLOCK_BYTES = 4 << 20
+# From one sample at the highest rate of an amplifier to more than a day.
+PLAUSIBLE_RECORD_S = (1e-6, 1e5)
 # The first annotation of a data record is empty and says when the record starts.
 _ONSET = re.compile(rb"([+-]\d{1,12}(?:\.\d{0,12})?)(?:\x15[\d.]*)?\x14")
 
@@ -92,9 +96,10 @@ class Layout:
         return sum(self.samples) * self.bytes_a_sample
 
     def header_for(self, n_records: int) -> bytes:
-        """The header, of so many data records."""
+        """The header, of so many data records; fields that were padded with zeros have spaces."""
         stated = str(n_records).encode().ljust(_NUMBER_WIDTH)
-        return self.header[: _N_RECORDS.start] + stated + self.header[_N_RECORDS.stop :]
+        header = self.header[: _N_RECORDS.start] + stated + self.header[_N_RECORDS.stop :]
+        return header.replace(b"\0", b" ")
 
     def timekeeping_bytes(self) -> slice | None:
         """Where a data record says when it starts: its first annotation signal."""
@@ -143,6 +148,24 @@ def read_layout(name: str, file: BinaryIO, file_bytes: int) -> Layout:
     )
 
 
+def record_blocks(name: str, file: BinaryIO, layout: Layout) -> Iterator[tuple[slice, bytes]]:
+    """The data records, a few MB of them at a time, and which they are.
+
+    Raises
+    ------
+    RecordingError
+        If the file became shorter since its layout was read.
+    """
+    at_once = max(1, BLOCK_BYTES // layout.record_bytes)
+    file.seek(len(layout.header))
+    for first in range(0, layout.n_records, at_once):
+        n = min(at_once, layout.n_records - first)
+        data = file.read(n * layout.record_bytes)
+        if len(data) < n * layout.record_bytes:
+            raise damaged(name, "it became shorter while it was read")
+        yield slice(first, first + n), data
+
+
 def record_onsets_s(name: str, file: BinaryIO, layout: Layout) -> NDArray[np.float64]:
     """When each data record of an interrupted recording starts, as the record itself says.
 
@@ -156,22 +179,33 @@ def record_onsets_s(name: str, file: BinaryIO, layout: Layout) -> NDArray[np.flo
     RecordingError
         If a record does not say it.
     """
-    return np.array(
-        [onset_s(name, file, layout, record) for record in range(layout.n_records)],
-        dtype=np.float64,
-    )
-
-
-def onset_s(name: str, file: BinaryIO, layout: Layout, record: int) -> float:
-    """The same for one data record."""
     where = layout.timekeeping_bytes()
     if where is None:
         raise damaged(name, f"it is {layout.kind}+ and holds no annotations to tell the time by")
-    file.seek(len(layout.header) + record * layout.record_bytes + where.start)
-    found = _ONSET.match(file.read(min(where.stop - where.start, 64)))
-    if found is None:
-        raise damaged(name, f"data record {record + 1} does not say when it starts")
-    return float(found[1])
+    onsets_s = np.empty(layout.n_records)
+    for records, data in record_blocks(name, file, layout):
+        for number in range(records.start, records.stop):
+            at = (number - records.start) * layout.record_bytes
+            onset_s = _onset_s(data[at + where.start : at + where.stop])
+            if onset_s is None:
+                raise damaged(name, f"data record {number + 1} does not say when it starts")
+            onsets_s[number] = onset_s
+    return onsets_s
+
+
+def first_onset_s(file: BinaryIO, layout: Layout) -> float:
+    """What an uninterrupted EDF+ file adds to its start: a fraction of a second, if anything."""
+    where = layout.timekeeping_bytes() if layout.is_plus else None
+    if where is None:
+        return 0.0
+    file.seek(len(layout.header) + where.start)
+    # The samples can be read without it.
+    return _onset_s(file.read(where.stop - where.start)) or 0.0
+
+
+def _onset_s(annotations: bytes) -> float | None:
+    found = _ONSET.match(annotations)
+    return None if found is None else float(found[1])
 
 
 def damaged(name: str, what: str) -> RecordingError:
@@ -198,7 +232,8 @@ def _record_duration(name: str, header: bytes) -> float:
         duration_s = float(header[244:252].strip(b" \0"))
     except ValueError:
         duration_s = math.nan
-    if not (math.isfinite(duration_s) and duration_s > 0):
+    shortest_s, longest_s = PLAUSIBLE_RECORD_S
+    if not shortest_s <= duration_s <= longest_s:
         raise damaged(name, "it does not say how long a data record lasts")
     return duration_s
 

@@ -15,9 +15,13 @@ if TYPE_CHECKING:
     from edfio import Bdf, Edf
 
 # EDF+ orders the patient field: code, sex, birth date, name; "X" stands for what is unknown.
-# Writers of plain EDF often keep to that order too.
-_ORDERED = re.compile(r"\S+ [FMXfmx] (?:X|\d{1,2}-[A-Za-z]{3}-\d{4}) \S+(?: .*)?")
-_CLOCK = re.compile(r"(\d{1,2})[.:](\d{1,2})[.:](\d{1,2})")
+# Writers of plain EDF often keep to that order too; some of EDF+ stop halfway.
+_BIRTH_DATE = r"(?:X|\d{1,2}-[A-Za-z]{3}-\d{4})"
+_ORDERED = re.compile(rf"\S+ [FMXfmx] {_BIRTH_DATE} \S+(?: .*)?")
+_BEGUN = re.compile(rf"\S+(?: [FMXfmx](?: {_BIRTH_DATE})?)?")
+# Day, month and year, or hour, minute and second.
+_THREE_NUMBERS = re.compile(r" ?(\d{1,2})[.:/-] ?(\d{1,2})[.:/-] ?(\d{1,2})")
+_FIRST_CENTURY_YEAR = 85
 # The date that EDF+ prescribes where the true one is unknown.
 _NO_DATE = date(1985, 1, 1)
 _CUTOFF = re.compile(r"(HP|LP|N)\s*:\s*(\d+(?:[.,]\d+)?)\s*(mHz|Hz)", re.IGNORECASE)
@@ -31,9 +35,9 @@ def text_of(field: str) -> str:
 
 
 def subject_of(edf: Edf | Bdf, *, is_plus: bool, recorded_at: datetime | None) -> Subject:
-    """The person, by EDF+'s ordered field; a plain EDF's free text is taken as an identifier."""
+    """The person, by EDF+'s ordered field; free text is taken as an identifier."""
     text = text_of(edf.local_patient_identification)
-    if not (is_plus or _ORDERED.fullmatch(text)):
+    if not (_ORDERED.fullmatch(text) or (is_plus and _BEGUN.fullmatch(text))):
         return Subject(id=_known(text))
     patient = edf.patient
     born_on = None
@@ -41,7 +45,8 @@ def subject_of(edf: Edf | Bdf, *, is_plus: bool, recorded_at: datetime | None) -
         born_on = patient.birthdate
     return Subject(
         id=_known(text_of(patient.code)),
-        name=_known(text_of(patient.name)),
+        # EDF+ writes spaces as underscores; an identifier may have some of its own.
+        name=_known(text_of(patient.name).replace("_", " ")),
         sex=sex_of_word(patient.sex),
         age_years=_age_years(born_on, recorded_at),
         born_on=born_on,
@@ -54,18 +59,17 @@ def recorded_at_of(edf: Edf | Bdf, header: bytes, *, onset_s: float) -> datetime
     Parameters
     ----------
     header : bytes
-        The file's own, which holds the time of day.
+        The file's own, which holds the plain date and the time of day.
     onset_s : float
         What the first data record adds to it.
     """
-    day = _day_of(edf)
+    day = _day_of(edf, header)
     if day is None:
         return None
-    found = _CLOCK.fullmatch(header[176:184].decode("latin-1").strip(" \0"))
-    hour, minute, second = (int(part) for part in found.groups()) if found else (0, 0, 0)
-    # An impossible time of day leaves the date standing.
     start = datetime(day.year, day.month, day.day)
+    # An impossible time of day leaves the date standing.
     with contextlib.suppress(ValueError, OverflowError):
+        hour, minute, second = _three_numbers(header[176:184])
         start = start.replace(hour=hour, minute=minute, second=second)
         start += timedelta(seconds=onset_s)
     return start
@@ -86,24 +90,31 @@ def filters_of(prefilterings: Iterable[str]) -> Filters:
     )
 
 
-def _day_of(edf: Edf | Bdf) -> date | None:
+def _day_of(edf: Edf | Bdf, header: bytes) -> date | None:
     """The date of EDF+'s recording field, which has four digits of the year; else the header's."""
     words = text_of(edf.local_recording_identification).split()
-    if words[:1] == ["Startdate"]:
-        if words[1:2] == ["X"]:
-            return None
-        with contextlib.suppress(ValueError):
-            return edf.recording.startdate
+    if words[:2] == ["Startdate", "X"]:
+        return None
+    with contextlib.suppress(ValueError):
+        return edf.recording.startdate
     try:
-        day = edf.startdate
+        day, month, year = _three_numbers(header[168:176])
+        plain = date(year + (1900 if year >= _FIRST_CENTURY_YEAR else 2000), month, day)
     except ValueError:
         return None
-    return None if day == _NO_DATE else day
+    return None if plain == _NO_DATE else plain
+
+
+def _three_numbers(field: bytes) -> tuple[int, int, int]:
+    found = _THREE_NUMBERS.fullmatch(field.decode("latin-1").strip("\0"))
+    if found is None:
+        raise ValueError(field)
+    return int(found[1]), int(found[2]), int(found[3])
 
 
 def _known(text: str) -> str | None:
-    """The text, EDF+'s underscores back as spaces; None where it is only ``X`` and spaces."""
-    return None if not text.strip("Xx _") else text.replace("_", " ").strip()
+    """The text; None where it is only ``X`` and spaces, which stand for unknown."""
+    return text if text.strip("Xx ") else None
 
 
 def _age_years(born_on: date | None, recorded_at: datetime | None) -> float | None:

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from core.errors import RecordingError
 
-# Somewhat more than an hour of twelve leads at 500 Hz: 190 MB as doubles, of which reading
-# holds a few copies. No resting recording comes near it.
-MOST_VALUES = 24_000_000
+# 42 minutes of twelve leads at 500 Hz: 120 MB as doubles, of which reading holds up to four
+# copies. No resting recording comes near it.
+MOST_VALUES = 15_000_000
 
 
 def refuse_too_long(name: str, *, n_leads: int, n_samples: int, rate_hz: float) -> None:

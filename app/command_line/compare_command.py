@@ -8,8 +8,9 @@ from typing import Any
 
 from app.command_line.failures import CommandFailed
 from app.command_line.outputs import as_json, refuse_two_to_standard_output, write_output
+from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import comparison_summary
-from core import Comparison, Settings, Spread, compare, read_recording
+from core import Comparison, Settings, Spread, compare
 from core.comparison.refused import refused_comparison
 from core.comparison.table import comparison_csv
 from core.errors import ComparisonError, NotComparable
@@ -18,7 +19,7 @@ from core.errors import ComparisonError, NotComparable
 def add_to(commands: Any) -> None:
     """Add the command to the parser."""
     parser = commands.add_parser("compare", help="compare two recordings of one person")
-    parser.add_argument("earlier", metavar="EARLIER", help="a file or a WFDB record name")
+    parser.add_argument("earlier", metavar="EARLIER", help=RECORDING_HELP)
     parser.add_argument("later", metavar="LATER")
     parser.add_argument("--json", metavar="FILE", help="write the comparison as JSON")
     parser.add_argument("--pdf", metavar="FILE", help="write the comparison report")
@@ -38,6 +39,7 @@ def add_to(commands: Any) -> None:
         help="compare in spite of the stop of this name, such as identifiers-differ; "
         "the result says so",
     )
+    add_table_options(parser)
     parser.set_defaults(run=run)
 
 
@@ -45,7 +47,7 @@ def run(options: argparse.Namespace) -> None:
     """Compare, and write what was asked for; a readable summary if nothing was."""
     refuse_two_to_standard_output(options.json, options.pdf, options.csv)
     settings = _settings(options.spread_mm, tuple(options.lift_stop))
-    earlier, later = read_recording(options.earlier), read_recording(options.later)
+    earlier, later = (read_named(path, options) for path in (options.earlier, options.later))
     try:
         comparison = compare(earlier, later, settings)
     except ComparisonError as error:

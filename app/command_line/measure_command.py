@@ -7,21 +7,23 @@ import sys
 from typing import Any
 
 from app.command_line.outputs import as_json, write_output
+from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import recording_summary
-from core import measure, read_recording
+from core import measure
 
 
 def add_to(commands: Any) -> None:
     """Add the command to the parser."""
     parser = commands.add_parser("measure", help="measure one recording")
-    parser.add_argument("recording", metavar="RECORDING", help="a file or a WFDB record name")
+    parser.add_argument("recording", metavar="RECORDING", help=RECORDING_HELP)
     parser.add_argument("--json", metavar="FILE", help="write the recording report as JSON")
+    add_table_options(parser)
     parser.set_defaults(run=run)
 
 
 def run(options: argparse.Namespace) -> None:
     """Measure, and write the report or print a summary."""
-    report = measure(read_recording(options.recording))
+    report = measure(read_named(options.recording, options))
     if options.json:
         write_output(options.json, as_json(report.to_dict()))
     else:

@@ -9,7 +9,8 @@ from typing import Any
 
 from app.command_line.failures import CommandFailed
 from app.command_line.outputs import say
-from core import ElectrodeMove, move_electrodes, read_recording
+from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
+from core import ElectrodeMove, move_electrodes
 from core.recordings.leads import CHEST_LEADS
 from core.recordings.wfdb_writer import write_wfdb
 
@@ -48,7 +49,7 @@ def add_to(commands: Any) -> None:
     parser = commands.add_parser(
         "move", help="write the tracing that the person would have given with electrodes moved"
     )
-    parser.add_argument("recording", metavar="RECORDING", help="a file or a WFDB record name")
+    parser.add_argument("recording", metavar="RECORDING", help=RECORDING_HELP)
     parser.add_argument(
         "--electrode",
         dest="moves",
@@ -66,6 +67,7 @@ def add_to(commands: Any) -> None:
     parser.add_argument(
         "--out", metavar="STEM", required=True, help="WFDB record to write, without an ending"
     )
+    add_table_options(parser)
     parser.set_defaults(run=run)
 
 
@@ -73,7 +75,7 @@ def run(options: argparse.Namespace) -> None:
     """Foretell the moved tracing and write it as a WFDB record."""
     try:
         moves = [ElectrodeMove(**move) for move in options.moves]
-        moved = move_electrodes(read_recording(options.recording), moves)
+        moved = move_electrodes(read_named(options.recording, options), moves)
     except ValueError as error:
         if type(error) is not ValueError:  # a RecordingError speaks for itself
             raise

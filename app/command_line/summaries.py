@@ -8,6 +8,7 @@ from core.notices import Notice
 from core.recordings.leads import TWELVE_LEADS
 from core.wording.caution import CAUTIONS, PLACEMENT_CAVEAT
 from core.wording.judgements import MARKS, SHORT_NAMES, WORDS
+from core.wording.notices import NOTICE_WORDS
 from core.wording.numbers import plain, signed, signed_range
 from core.wording.recordings import key_numbers, when_and_who
 
@@ -81,5 +82,5 @@ def _recording_line(report: RecordingReport) -> str:
 
 
 def _notice_lines(notices: tuple[Notice, ...]) -> list[str]:
-    lines = [f"{notice.severity}: {notice.text}" for notice in notices]
+    lines = [f"{NOTICE_WORDS[notice.severity]}: {notice.text}" for notice in notices]
     return [*lines, ""] if lines else []

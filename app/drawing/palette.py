@@ -49,7 +49,8 @@ class Palette:
         return QColor(roles.get(code, self.soft_ink))
 
 
-# Earlier, later, reach and noise after Okabe & Ito's colour-blind safe palette.
+# Earlier, later, reach and noise after Okabe & Ito's colour-blind safe palette; on white the
+# vermilion is a shade darker, so that words in it can be read.
 LIGHT = Palette(
     ground="#FBFAF7",
     card="#FFFFFF",
@@ -57,7 +58,7 @@ LIGHT = Palette(
     ink="#1C1B1A",
     soft_ink="#5F5E5B",
     earlier="#0072B2",
-    later="#D55E00",
+    later="#BD5200",
     reach="#E69F00",
     reach_alpha=0.18,
     noise="#8A8A8A",

@@ -32,6 +32,8 @@ class Style:
         font = QFont(self.family)
         font.setPixelSize(max(1, round(size)))
         font.setBold(bold)
+        # A joined "ff" in a PDF is one sign, which a search for the word does not find.
+        font.setFeature(QFont.Tag("liga"), 0)
         return font
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from PySide6.QtCore import QRectF, Qt
-from PySide6.QtGui import QPainter, QPdfWriter, QPen
+from PySide6.QtGui import QFont, QPainter, QPdfWriter, QPen
 
 from app.drawing.fonts import report_family
 from app.drawing.lead_plots import RIGHT
@@ -17,6 +17,7 @@ from core.wording.caution import CAUTION, PLACEMENT_CAVEAT
 PER_MM = 100.0
 MM_PER_POINT = 25.4 / 72.0
 MARGIN_MM = 14.0
+FOOT = f"{PLACEMENT_CAVEAT}\n{CAUTION}"
 
 
 def mm(length: float) -> float:
@@ -86,30 +87,48 @@ class Page:
         taken = draw_paragraph(self.painter, rect, text, self.style.font(self.style.body), colour)
         self.top += taken + mm(gap)
 
+    @property
+    def bottom(self) -> float:
+        """Where the foot begins; nothing else may be drawn below."""
+        return self.height - mm(MARGIN_MM) - self._last_line - self._foot_height - mm(1.5)
+
+    def height_of(self, text: str) -> float:
+        """Height of a paragraph over the whole width."""
+        return self._measure(text, self.style.font(self.style.body))
+
     def foot(self, number: int, of: int, made: str) -> None:
         """Caveat and cautions, and the page's number: on every page."""
         style, painter = self.style, self.painter
         soft = style.palette.colour("soft_ink")
         font = style.font(style.caption)
-        flags = int(Qt.AlignmentFlag.AlignLeft | Qt.TextFlag.TextWordWrap)
-        text = f"{PLACEMENT_CAVEAT}\n{CAUTION}"
-        painter.setFont(font)
-        room = QRectF(self.left, 0.0, self.inner_width, self.height)
-        needed = painter.boundingRect(room, flags, text).height()
-        line = style.caption * 1.5
-        top = self.height - mm(MARGIN_MM) - line - needed - mm(1.5)
+        top = self.bottom
         painter.setPen(QPen(style.palette.colour("line"), mm(0.2)))
         painter.drawLine(int(self.left), int(top), int(self.left + self.inner_width), int(top))
         draw_paragraph(
             painter,
-            QRectF(self.left, top + mm(1.0), self.inner_width, needed),
-            text,
+            QRectF(self.left, top + mm(1.0), self.inner_width, self._foot_height),
+            FOOT,
             font,
             style.palette.colour("ink"),
         )
+        line = self._last_line
         last = QRectF(self.left, self.height - mm(MARGIN_MM) - line, self.inner_width, line)
         draw_text(painter, last, made, font, soft)
         draw_text(painter, last, f"page {number} of {of}", font, soft, RIGHT)
+
+    @property
+    def _foot_height(self) -> float:
+        return self._measure(FOOT, self.style.font(self.style.caption))
+
+    @property
+    def _last_line(self) -> float:
+        return self.style.caption * 1.5
+
+    def _measure(self, text: str, font: QFont) -> float:
+        flags = int(Qt.AlignmentFlag.AlignLeft | Qt.TextFlag.TextWordWrap)
+        self.painter.setFont(font)
+        room = QRectF(self.left, 0.0, self.inner_width, self.height)
+        return self.painter.boundingRect(room, flags, text).height()
 
 
 def start_page(writer: QPdfWriter, painter: QPainter, *, first: bool) -> Page:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRectF, Qt
 from PySide6.QtGui import QPageLayout, QPageSize, QPainter, QPdfWriter, QPen
 
@@ -12,16 +14,17 @@ from app.report.page import Page, mm, start_page
 from app.report.tables import Column, draw_table
 from core.comparison.results import Comparison
 from core.measures.report import RecordingReport
+from core.notices import Notice
 from core.recordings.leads import TWELVE_LEADS
 from core.version import PROGRAM_NAME, program_version
 from core.wording.caution import KNOWN_LIMITS
 from core.wording.judgements import MEANINGS, WORDS
+from core.wording.notices import NOTICE_WORDS
 from core.wording.numbers import plain, signed, signed_range
 from core.wording.recordings import beats_used, key_numbers, person, when
 
 TITLE = "ECG comparison report"
 RESOLUTION_DPI = 1200
-N_PAGES = 2
 
 
 def write_report(comparison: Comparison) -> bytes:
@@ -40,8 +43,18 @@ def write_report(comparison: Comparison) -> bytes:
     painter = QPainter(writer)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     try:
-        _answer_page(start_page(writer, painter, first=True), comparison)
-        _evidence_page(start_page(writer, painter, first=False), comparison)
+        page = start_page(writer, painter, first=True)
+        left_over = _answer_page(page, comparison)
+        n_pages = 3 if left_over else 2
+        page.foot(1, n_pages, _made(comparison))
+        page = start_page(writer, painter, first=False)
+        _evidence_page(page, comparison)
+        page.foot(2, n_pages, _made(comparison))
+        if left_over:
+            page = start_page(writer, painter, first=False)
+            page.heading("Further notices")
+            _notices(page, left_over)
+            page.foot(3, n_pages, _made(comparison))
     finally:
         painter.end()
     buffer.close()
@@ -57,19 +70,25 @@ def _made(comparison: Comparison) -> str:
     )
 
 
-def _answer_page(page: Page, comparison: Comparison) -> None:
-    page.foot(1, N_PAGES, _made(comparison))
+def _answer_page(page: Page, comparison: Comparison) -> Sequence[Notice]:
+    """Draw the page that answers; the notices that it has no room for."""
     _title(page)
     _recordings(page, comparison)
     _verdict(page, comparison)
     page.heading("Representative beats")
     _wall(page, comparison)
     _legend(page)
-    for notice in comparison.notices[:8]:
-        page.paragraph(f"{notice.severity.capitalize()}: {notice.text}", gap=0.6)
-    rest = len(comparison.notices) - 8
-    if rest > 0:
-        page.paragraph(f"and {rest} more in the JSON of this comparison.", gap=0.6)
+    return _notices(page, comparison.notices)
+
+
+def _notices(page: Page, notices: Sequence[Notice]) -> Sequence[Notice]:
+    """Draw notices as far as the page goes; the rest."""
+    for drawn, notice in enumerate(notices):
+        text = f"{NOTICE_WORDS[notice.severity]}: {notice.text}"
+        if page.top + page.height_of(text) > page.bottom:
+            return notices[drawn:]
+        page.paragraph(text, gap=0.6)
+    return ()
 
 
 def _title(page: Page) -> None:
@@ -184,7 +203,6 @@ def _legend(page: Page) -> None:
 
 
 def _evidence_page(page: Page, comparison: Comparison) -> None:
-    page.foot(2, N_PAGES, _made(comparison))
     page.heading("Changes of ST and T, in mV")
     _changes_table(page, comparison)
     page.heading("Electrodes of the later recording against the earlier, by the QRS")

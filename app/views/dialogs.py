@@ -6,7 +6,7 @@ from pathlib import Path
 
 from PySide6.QtWidgets import QFileDialog, QMessageBox, QWidget
 
-RECORDINGS = "Recordings (*.hea *.dcm);;All files (*)"
+RECORDINGS = "Recordings (*.hea *.dcm *.edf *.bdf *.scp *.xml *.csv *.tsv);;All files (*)"
 
 
 def ask_recording(parent: QWidget, title: str) -> Path | None:

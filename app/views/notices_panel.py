@@ -9,8 +9,7 @@ from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
 from app.state.bench_state import BenchState
 from app.views.labels import label
 from app.views.theme import BODY, HEADING, current_palette
-
-WORDS = {"stop": "Stop", "caution": "Caution", "info": "Note"}
+from core.wording.notices import NOTICE_WORDS
 
 
 class NoticesPanel(QWidget):
@@ -47,7 +46,7 @@ class NoticesPanel(QWidget):
         if comparison is None:
             return []
         notices = comparison.notices
-        return [f"{WORDS[notice.severity]}: {notice.text}" for notice in notices] or [
+        return [f"{NOTICE_WORDS[notice.severity]}: {notice.text}" for notice in notices] or [
             "Nothing in the files or the tracings limits this comparison."
         ]
 

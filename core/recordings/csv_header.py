@@ -11,7 +11,8 @@ from datetime import date, datetime
 
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.recording import Filters, Subject
-from core.recordings.wfdb_reader import MILLIVOLTS_PER_UNIT, subject_of_comments
+from core.recordings.subject_words import subject_of_comments
+from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 DELIMITERS = ("\t", ";", ",")
 FEWEST_LEADS = 3

@@ -35,7 +35,7 @@ from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.recording import Recording, Source
 from core.recordings.shown import shown
 from core.recordings.size_limit import refuse_too_long
-from core.recordings.wfdb_reader import MILLIVOLTS_PER_UNIT
+from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 if TYPE_CHECKING:
     from edfio import Bdf, BdfSignal, Edf, EdfSignal

@@ -3,23 +3,44 @@
 from __future__ import annotations
 
 import os
+from collections.abc import Callable
 from pathlib import Path
 
 from core.errors import RecordingError
+from core.recordings.csv_reader import looks_like_csv, read_csv
 from core.recordings.dicom_reader import looks_like_dicom, read_dicom
+from core.recordings.edf_reader import looks_like_edf, read_edf
 from core.recordings.recording import Recording
+from core.recordings.scp.container import looks_like_scp
+from core.recordings.scp.reader import read_scp
 from core.recordings.wfdb_reader import looks_like_wfdb_header, read_wfdb
 
-READABLE = "a WFDB record or a DICOM ECG waveform"
+READABLE = "a WFDB record, a DICOM ECG waveform, an EDF, BDF or SCP-ECG file, or a table (CSV)"
+# Recognised by content, the surest signs first; a table is any text that names leads.
+_READERS: tuple[tuple[Callable[[bytes], bool], Callable[[Path], Recording]], ...] = (
+    (looks_like_dicom, read_dicom),
+    (looks_like_scp, read_scp),
+    (looks_like_edf, read_edf),
+    (looks_like_wfdb_header, read_wfdb),
+)
 
 
-def read_recording(path: str | os.PathLike[str]) -> Recording:
+def read_recording(
+    path: str | os.PathLike[str],
+    *,
+    unit: str | None = None,
+    sampling_rate_hz: float | None = None,
+) -> Recording:
     """Read a 12-lead recording from a file, or a WFDB record by its name.
 
     Parameters
     ----------
     path : str or path-like
         A file, or a WFDB record name with or without ``.hea``.
+    unit : str, optional
+        Unit of the leads of a table that states none, such as ``"mV"``.
+    sampling_rate_hz : float, optional
+        Of a table that has no time column and states no rate.
 
     Returns
     -------
@@ -32,7 +53,7 @@ def read_recording(path: str | os.PathLike[str]) -> Recording:
     """
     chosen = Path(path)
     try:
-        return _read(chosen)
+        return _read(chosen, unit, sampling_rate_hz)
     except OSError as error:
         raise RecordingError(
             f"{chosen.name}: the file cannot be opened ({error.strerror or 'unknown reason'}). "
@@ -45,7 +66,7 @@ def read_recording(path: str | os.PathLike[str]) -> Recording:
         ) from error
 
 
-def _read(chosen: Path) -> Recording:
+def _read(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Recording:
     header = chosen.with_name(chosen.name + ".hea") if chosen.name else chosen
     if not chosen.is_file() and header.is_file():
         return read_wfdb(header)
@@ -59,13 +80,14 @@ def _read(chosen: Path) -> Recording:
         start = file.read(4096)
     if not start:
         raise RecordingError(f"{chosen.name}: the file is empty. Export the recording again.")
-    if looks_like_dicom(start):
-        return read_dicom(chosen)
-    if looks_like_wfdb_header(start):
-        return read_wfdb(chosen)
+    for recognises, read in _READERS:
+        if recognises(start):
+            return read(chosen)
     beside = chosen.with_suffix(".hea")
     if beside.is_file():  # the signal file of a WFDB record was named
         return read_wfdb(beside)
+    if looks_like_csv(start):
+        return read_csv(chosen, unit=unit, sampling_rate_hz=sampling_rate_hz)
     raise RecordingError(
         f"{chosen.name}: the content is not that of any readable format. Choose {READABLE}."
     )

@@ -16,11 +16,11 @@ from core.errors import RecordingError
 from core.recordings.assemble import Channel, assemble_recording
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.leads import lead_of_label
-from core.recordings.recording import Recording, Source, Subject
-from core.recordings.subject_words import age_of_word, sex_of_word
+from core.recordings.recording import Recording, Source
+from core.recordings.subject_words import subject_of_comments
+from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 FORMAT_NAME = "WFDB"
-MILLIVOLTS_PER_UNIT = {"mv": 1.0, "uv": 1e-3, "µv": 1e-3, "μv": 1e-3, "v": 1e3, "nv": 1e-6}
 
 # First line of a header: record name (with its number of segments), number of signals, ...
 _RECORD_LINE = re.compile(rb"^[^\s/]+(?:/\d+)?[ \t]+\d+(?:[ \t]|$)")
@@ -118,25 +118,6 @@ def _channels(name: str, record: Any) -> Iterable[Channel]:
             samples_mv = samples_mv * (factor * sign)
         step = abs(float(gain)) / factor if gain else float("nan")
         yield Channel(lead, samples_mv, step if np.isfinite(step) and step > 0 else 1000.0)
-
-
-def subject_of_comments(comments: Iterable[str]) -> Subject:
-    """What the comment lines of a header say, written as ``key: value`` in any style."""
-    said: dict[str, str] = {}
-    for comment in comments:
-        key, colon, value = comment.partition(":")
-        if colon and value.strip():
-            said.setdefault(key.strip(" <>#\t").lower(), value.strip())
-
-    def first(*keys: str) -> str | None:
-        return next((said[key] for key in keys if key in said), None)
-
-    return Subject(
-        id=first("patient id", "subject id", "patient", "subject"),
-        name=first("name", "patient name"),
-        sex=sex_of_word(first("sex", "gender")),
-        age_years=age_of_word(first("age")),
-    )
 
 
 def _first_line(error: Exception) -> str:

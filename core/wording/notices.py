@@ -7,6 +7,8 @@ from collections.abc import Sequence
 from core.notices import Notice
 from core.wording.lists import joined, named
 
+NOTICE_WORDS = {"stop": "Stop", "caution": "Caution", "info": "Note"}
+
 
 def limb_leads_derived(derived: Sequence[str]) -> Notice:
     """Some limb leads were computed, not recorded."""

@@ -5,7 +5,7 @@ import pytest
 
 from core import RecordingError, read_recording
 from core.recordings.leads import TWELVE_LEADS
-from core.recordings.wfdb_reader import subject_of_comments
+from core.recordings.subject_words import subject_of_comments
 from tests.helpers.wfdb_files import write_record
 
 

@@ -34,6 +34,21 @@ def test_a_closed_surface_is_seen_whole_from_inside_and_not_at_all_from_outside(
     assert solid_angles(observer, sphere.corners_m).sum() == pytest.approx(angle, abs=1e-9)
 
 
+def test_the_sign_says_which_side_of_a_triangle_is_seen():
+    towards = np.array([[3.0, 3.0, 3.0]])
+    assert solid_angles(np.zeros((1, 3)), OCTANT)[0, 0] > 0  # its back
+    assert solid_angles(towards, OCTANT)[0, 0] < 0
+
+
+def test_a_closed_surface_is_half_seen_from_a_point_on_it():
+    """The middle of a flat triangle is a smooth point; its own triangle is seen edge on."""
+    sphere = icosphere(3)
+    middles = sphere.corners_m.mean(axis=1)
+    angles = solid_angles(middles, sphere.corners_m)
+    np.fill_diagonal(angles, 0.0)
+    np.testing.assert_allclose(angles.sum(axis=1), 2 * np.pi, atol=1e-9)
+
+
 def test_every_row_of_a_surface_on_itself_sums_to_a_half_space():
     sphere = icosphere(3)
     rows = point_weights(sphere.points_m, sphere, own=True).sum(axis=1)

@@ -54,19 +54,24 @@ def test_the_legendre_series_of_a_radial_dipole(eccentricity):
     np.testing.assert_allclose(found, series, atol=1e-9)
 
 
-# mV at arc shifts of -30 to 30 mm; R = 0.13 m. The rows where the electrode starts at the pole.
+# mV at arc shifts of -30 to 30 mm from an angle off the dipole; R = 0.13 m; worked out.
 SHIFTS_MM = (-30, -20, -10, 0, 10, 20, 30)
 SHIFTED = {
-    (0.4, "radial"): (1.5120, 1.6131, 1.6780, 1.7004, 1.6780, 1.6131, 1.5120),
-    (0.5, "radial"): (1.9580, 2.1654, 2.3050, 2.3544, 2.3050, 2.1654, 1.9580),
-    (0.6, "radial"): (2.5971, 3.0625, 3.4045, 3.5315, 3.4045, 3.0625, 2.5971),
-    (0.6, "tangential"): (-1.4891, -1.1413, -0.6250, 0, 0.6250, 1.1413, 1.4891),
+    (0.4, "radial", 0): (1.5120, 1.6131, 1.6780, 1.7004, 1.6780, 1.6131, 1.5120),
+    (0.5, "radial", 0): (1.9580, 2.1654, 2.3050, 2.3544, 2.3050, 2.1654, 1.9580),
+    (0.6, "radial", 0): (2.5971, 3.0625, 3.4045, 3.5315, 3.4045, 3.0625, 2.5971),
+    (0.4, "tangential", 0): (-0.5725, -0.4000, -0.2059, 0, 0.2059, 0.4000, 0.5725),
+    (0.5, "tangential", 0): (-0.8911, -0.6434, -0.3382, 0, 0.3382, 0.6434, 0.8911),
+    (0.6, "tangential", 0): (-1.4891, -1.1413, -0.6250, 0, 0.6250, 1.1413, 1.4891),
+    (0.4, "radial", 30): (1.4102, 1.2670, 1.1142, 0.9598, 0.8100, 0.6690, 0.5394),
+    (0.5, "radial", 30): (1.7608, 1.5024, 1.2486, 1.0134, 0.8039, 0.6223, 0.4674),
+    (0.6, "radial", 30): (2.1971, 1.7289, 1.3234, 0.9899, 0.7237, 0.5140, 0.3498),
 }
 
 
 @pytest.mark.parametrize(("case", "expected"), SHIFTED.items(), ids=str)
-def test_the_published_electrode_shifts(case, expected):
-    eccentricity, direction = case
-    angles = np.degrees(np.array(SHIFTS_MM) / 130.0)
+def test_electrode_shifts_along_the_arc(case, expected):
+    eccentricity, direction, from_deg = case
+    angles = from_deg + np.degrees(np.array(SHIFTS_MM) / 130.0)
     found = potential_mv(angles, eccentricity, MOMENTS[direction], radius_m=0.13)
     np.testing.assert_allclose(found, expected, atol=5e-5)  # half the last digit

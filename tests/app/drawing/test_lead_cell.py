@@ -1,0 +1,111 @@
+from __future__ import annotations
+
+import numpy as np
+import pytest
+from PySide6.QtCore import QRectF
+
+from app.drawing.lead_plots import draw_lead_cell
+from app.drawing.palette import DARK, LIGHT
+from app.drawing.pen import Style
+from core.recordings.leads import TWELVE_LEADS
+from core.wording.judgements import WORDS
+from core.wording.numbers import signed
+from tests.app.drawing.changed import (
+    with_all_beats,
+    with_judgement,
+    with_later,
+    without_later,
+)
+from tests.app.drawing.readback import drawn_by, lying_on_each_other, picture
+
+CELL = QRectF(20, 20, 150, 120)
+WIDE, HIGH = 190, 160
+
+
+@pytest.fixture
+def style(qapp) -> Style:
+    return Style(LIGHT, 1.0, qapp.font().family(), caption=12, body=13, heading=16)
+
+
+def seen(comparison, lead, style, *, cell=CELL, selected=False) -> np.ndarray:
+    return picture(
+        WIDE,
+        HIGH,
+        lambda p: draw_lead_cell(p, cell, comparison, lead, style, selected=selected),
+    )
+
+
+def read(comparison, lead, style, *, cell=CELL):
+    return drawn_by(WIDE, HIGH, lambda p: draw_lead_cell(p, cell, comparison, lead, style))
+
+
+@pytest.mark.parametrize("lead", TWELVE_LEADS)
+def test_a_cell_names_its_lead_its_judgement_and_its_changes(raised, style, lead):
+    drawn = [piece.text for piece in read(raised, lead, style)]
+    result = raised.leads[lead]
+    assert lead in drawn
+    assert WORDS[result.judgement] in drawn
+    changes = drawn[-1]
+    for name, measure in (("ST", "st_mv"), ("T", "t_mv")):
+        assert f"{name} {signed(result.measures[measure].change)}" in changes
+
+
+def test_the_same_comparison_gives_the_same_picture(raised, style):
+    assert (seen(raised, "V2", style) == seen(raised, "V2", style)).all()
+
+
+@pytest.mark.parametrize("lead", [lead for lead in TWELVE_LEADS if lead != "V2"])
+def test_another_lead_gives_another_picture(raised, style, lead):
+    assert (seen(raised, lead, style) != seen(raised, "V2", style)).any()
+
+
+def test_another_later_beat_is_seen(raised, style):
+    assert (seen(with_later(raised, "V3", plus_mv=0.1), "V3", style) != seen(raised, "V3", style))[
+        40:120
+    ].any()
+
+
+def test_a_change_of_another_lead_is_not_seen(raised, style):
+    changed = with_later(raised, "V4", times=2.0)
+    assert (seen(changed, "V3", style) == seen(raised, "V3", style)).all()
+
+
+@pytest.mark.parametrize("judgement", [code for code in WORDS if code != "steady"])
+def test_another_judgement_is_seen(raised, style, judgement):
+    changed = with_judgement(raised, "V5", judgement)
+    assert (seen(changed, "V5", style) != seen(raised, "V5", style)).any()
+    assert WORDS[judgement] in [piece.text for piece in read(changed, "V5", style)]
+
+
+def test_the_selected_cell_is_seen_to_be_selected(raised, style):
+    assert (seen(raised, "V2", style, selected=True) != seen(raised, "V2", style)).any()
+
+
+def test_dark_is_not_light(raised, style):
+    dark = Style(DARK, 1.0, style.family, caption=12, body=13, heading=16)
+    lit = seen(raised, "V2", style)[30:130, 30:160].mean()
+    assert seen(raised, "V2", dark)[30:130, 30:160].mean() < 100 < lit
+
+
+@pytest.mark.parametrize("times", [1.0, 50.0])
+@pytest.mark.parametrize("lead", TWELVE_LEADS)
+def test_nothing_is_drawn_outside_the_cell(raised, style, lead, times):
+    outside = np.ones((HIGH, WIDE), bool)
+    outside[20:140, 20:170] = False
+    drawn = seen(with_all_beats(raised, times), lead, style)
+    assert (drawn[outside] == 255).all()
+    assert (drawn[~outside] != 255).any()
+
+
+@pytest.mark.parametrize("width", [60.0, 90.0, 130.0])
+def test_a_narrow_cell_keeps_its_words_inside_and_apart(inferior, style, width):
+    cell = QRectF(20, 20, width, 110)
+    drawn = read(inferior, "aVF", style, cell=cell)
+    assert max(piece.right for piece in drawn) <= cell.right()
+    assert min(piece.left for piece in drawn) >= cell.left()
+    assert lying_on_each_other(drawn) == []
+
+
+def test_a_lead_without_samples_is_still_named_and_judged(raised, style):
+    empty = with_judgement(without_later(raised, "V1"), "V1", "not-judged")
+    assert {"V1", "not judged"} <= {piece.text for piece in read(empty, "V1", style)}

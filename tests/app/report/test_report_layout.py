@@ -1,0 +1,129 @@
+from __future__ import annotations
+
+import pytest
+from pypdf import PageObject
+
+from app.report.page import MARGIN_MM
+from app.report.report import write_report
+from core.recordings.recording import Subject
+from core.wording.caution import PLACEMENT_CAVEAT
+from tests.app.drawing.readback import lying_on_each_other, pieces_of, words
+from tests.app.report.pages import POINTS_PER_MM, open_pdf, texts
+from tests.app.report.subjects import of_person, with_notices
+
+LONG_NAME = "Invented " + "Longname" * 6 + "Ash"  # 60 letters
+LONG_FILE = "recording-of-a-very-long-name-from-some-ward-on-some-day-in-autumn.hea"
+# The rounding of a glyph's advance, over a line of a hundred.
+SLACK_POINTS = 1.0
+
+
+def ordinary(comparison):
+    return comparison
+
+
+def long_names(comparison):
+    subject = Subject("INVENTED-0123456789", LONG_NAME, "female", 61.0)
+    return of_person(comparison, subject, file_name=LONG_FILE)
+
+
+def nobody(comparison):
+    return of_person(comparison, Subject())
+
+
+def written_from_right_to_left(comparison):
+    return of_person(comparison, Subject("INVENTED-01", "شخص مخترع", "male", 40.0))
+
+
+def chinese(comparison):
+    return of_person(comparison, Subject("INVENTED-01", "虚构的人", "female", 40.0))
+
+
+def with_signs_of_markup(comparison):
+    return of_person(comparison, Subject("<b>1</b>", "A & B <i>%s</i> \\n (c", None, None))
+
+
+def eight_notices(comparison):
+    return with_notices(comparison, 8)
+
+
+def thirty_notices(comparison):
+    return with_notices(comparison, 30)
+
+
+KINDS = pytest.mark.parametrize(
+    "kind",
+    [
+        ordinary,
+        long_names,
+        nobody,
+        written_from_right_to_left,
+        chinese,
+        with_signs_of_markup,
+        eight_notices,
+        thirty_notices,
+    ],
+)
+
+
+@pytest.fixture
+def pages(qapp, inferior, kind) -> list[PageObject]:
+    return list(open_pdf(write_report(kind(inferior))).pages)
+
+
+@KINDS
+def test_every_word_keeps_within_the_margins(pages):
+    for page in pages:
+        margin = MARGIN_MM * POINTS_PER_MM
+        for piece in pieces_of(page):
+            assert piece.left >= margin - SLACK_POINTS
+            assert piece.right <= float(page.mediabox.width) - margin + SLACK_POINTS, piece.text
+            assert margin <= piece.baseline <= float(page.mediabox.height) - margin
+
+
+@KINDS
+def test_no_words_lie_on_each_other(pages):
+    for page in pages:
+        assert lying_on_each_other(pieces_of(page)) == []
+
+
+@KINDS
+def test_nothing_but_the_cautions_stands_in_the_foot(pages):
+    for page in pages:
+        pieces = pieces_of(page)
+        start = next(piece for piece in pieces if PLACEMENT_CAVEAT.startswith(piece.text))
+        below = [piece for piece in pieces if piece.baseline >= start.baseline]
+        # Three lines of caveat, two of cautions, and the line that says what made it.
+        assert len({round(piece.baseline, 1) for piece in below}) == 6
+
+
+def test_an_identifier_is_printed_however_long_the_name(qapp, inferior):
+    assert "INVENTED-0123456789" in texts(write_report(long_names(inferior)))[0]
+
+
+def test_a_fingerprint_is_printed_however_long_the_files_name(qapp, inferior):
+    fingerprint = inferior.later.recording.source.sha256[:16]
+    assert fingerprint in texts(write_report(long_names(inferior)))[0]
+
+
+def test_a_long_name_is_shortened_with_a_sign_of_it(qapp, inferior):
+    drawn = pieces_of(open_pdf(write_report(long_names(inferior))).pages[0])
+    shown = [piece.text for piece in drawn if piece.text.startswith("Invented Longname")]
+    assert len(shown) == 2
+    assert all(text.endswith("…") or LONG_NAME in text for text in shown)
+
+
+def test_an_unnamed_person_and_an_unknown_time_are_called_so(qapp, inferior):
+    first = words(pieces_of(open_pdf(write_report(nobody(inferior))).pages[0]))
+    assert first.count("no identification in the file") == 2
+    assert first.count("time not stated") == 2
+    assert "None" not in first
+
+
+def test_markup_in_a_name_stays_a_name(qapp, inferior):
+    first = words(pieces_of(open_pdf(write_report(with_signs_of_markup(inferior))).pages[0]))
+    assert "A & B <i>%s</i> \\n (c · <b>1</b>" in first
+
+
+def test_a_sentence_in_arabic_letters_keeps_its_identifier(qapp, inferior):
+    first = words(pieces_of(open_pdf(write_report(written_from_right_to_left(inferior))).pages[0]))
+    assert first.count("INVENTED-01") == 2

@@ -9,7 +9,7 @@ from datetime import date, datetime, timedelta
 from typing import TYPE_CHECKING
 
 from core.recordings.recording import Filters, Subject
-from core.recordings.subject_words import OLDEST_YEARS, sex_of_word
+from core.recordings.subject_words import OLDEST_YEARS, known_word, sex_of_word
 
 if TYPE_CHECKING:
     from edfio import Bdf, Edf
@@ -38,15 +38,15 @@ def subject_of(edf: Edf | Bdf, *, is_plus: bool, recorded_at: datetime | None) -
     """The person, by EDF+'s ordered field; free text is taken as an identifier."""
     text = text_of(edf.local_patient_identification)
     if not (_ORDERED.fullmatch(text) or (is_plus and _BEGUN.fullmatch(text))):
-        return Subject(id=_known(text))
+        return Subject(id=known_word(text))
     patient = edf.patient
     born_on = None
     with contextlib.suppress(ValueError):
         born_on = patient.birthdate
     return Subject(
-        id=_known(text_of(patient.code)),
+        id=known_word(text_of(patient.code)),
         # EDF+ writes spaces as underscores; an identifier may have some of its own.
-        name=_known(text_of(patient.name).replace("_", " ")),
+        name=known_word(text_of(patient.name).replace("_", " ")),
         sex=sex_of_word(patient.sex),
         age_years=_age_years(born_on, recorded_at),
         born_on=born_on,
@@ -110,11 +110,6 @@ def _three_numbers(field: bytes) -> tuple[int, int, int]:
     if found is None:
         raise ValueError(field)
     return int(found[1]), int(found[2]), int(found[3])
-
-
-def _known(text: str) -> str | None:
-    """The text; None where it is only ``X`` and spaces, which stand for unknown."""
-    return text if text.strip("Xx ") else None
 
 
 def _age_years(born_on: date | None, recorded_at: datetime | None) -> float | None:

@@ -13,6 +13,11 @@ _MALE = {"m", "male", "man"}
 OLDEST_YEARS = 125.0
 
 
+def known_word(text: str | None) -> str | None:
+    """The text; None where it is only ``X`` and spaces, which stand for unknown."""
+    return text if (text or "").strip("Xx ") else None
+
+
 def sex_of_word(word: str | None) -> str | None:
     """``"female"``, ``"male"`` or None for a header's word."""
     lower = (word or "").strip().lower()

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from datetime import date, datetime
 
 from core.recordings.recording import Filters, Subject
-from core.recordings.subject_words import OLDEST_YEARS
+from core.recordings.subject_words import OLDEST_YEARS, known_word
 
 LAST_NAME, FIRST_NAME, PATIENT_ID, AGE, BIRTH_DATE, SEX = 0, 1, 2, 4, 5, 8
 RECORDED_ON, RECORDED_AT, HIGH_PASS, LOW_PASS = 25, 26, 27, 28
@@ -37,7 +37,7 @@ def read_header(content: bytes) -> Said:
     )
     return Said(
         subject=Subject(
-            id=_text(said.get(PATIENT_ID)),
+            id=known_word(_text(said.get(PATIENT_ID))),
             name=name or None,
             sex=_SEXES.get(said[SEX][0]) if said.get(SEX) else None,
             age_years=_age(said.get(AGE, b""), born_on, recorded_on),

@@ -13,6 +13,7 @@ from core.recordings.scp.container import looks_like_scp
 from core.recordings.scp.reader import read_scp
 from tests.helpers import scp_files as scp
 
+FORMATS = Path(__file__).resolve().parents[3].parent / "shared" / "data" / "formats"
 NUMBERS = (1, 2, 3, 4, 5, 6, 7, 8)  # I, II, V1 to V6
 STEP_NV, INTERVAL_US = 2500, 2000
 COLUMNS = [0, 1, *range(6, 12)]
@@ -171,3 +172,17 @@ def test_two_codes_that_begin_alike_are_refused(tmp_path):
         table += struct.pack("<BBBhI", prefix, whole, 1, value, int(code[::-1], 2))
     with pytest.raises(RecordingError, match="begin alike"):
         read_scp(write(tmp_path, scp.record(sections(leads()) | {2: table})))
+
+
+@pytest.mark.skipif(not FORMATS.is_dir(), reason="../shared/data/formats is not here")
+def test_a_record_of_protocol_3_by_another_writer():
+    """Its rhythm is in section 12, in whole nV: 184 where the writer scaled by 183.1."""
+    import wfdb
+
+    recording = read_scp(FORMATS / "healthy.scp")
+    truth = wfdb.rdrecord(str(FORMATS.parent / "ptb" / "s0460_re_10s")).p_signal[:, :12]
+    stated, scaled_by = 184e-6, 12 / 65535  # mV: +-6 mV over 16 bits
+    assert recording.sampling_rate_hz == 1000.0
+    off = np.abs(recording.signal_mv * scaled_by / stated - truth)
+    assert off.max() <= 1.01 * scaled_by  # one quantisation step, and rounding
+    assert recording.subject.id is None

@@ -20,7 +20,7 @@ GRID_OF_CELLS = (
 )
 LEAST_HEIGHT_MV = 0.9
 TIME_STEP_MS = 200.0
-LEVEL_STEPS_MV = (0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 50.0)
+MOST_LEVELS = 7
 RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
 CENTRE = Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignVCenter
 
@@ -50,19 +50,25 @@ def draw_grid(painter: QPainter, scale: Scale, style: Style, *, every: int = 1) 
 
 def axis_room(style: Style) -> tuple[float, float]:
     """Width at the left and height below that the numbers of `draw_axes` take."""
-    return text_width(f"{signed(-0.5, 1)}{NARROW}mV", style.font(style.caption)) + 6, (
-        style.caption * 1.3
-    )
+    widest = f"{signed(-1000.0, 0)}{NARROW}mV"
+    return text_width(widest, style.font(style.caption)) + 6, style.caption * 1.3
+
+
+def _round_step(least_mv: float) -> float:
+    """The smallest of 0.1, 0.2, 0.5, 1, 2, 5, 10 … mV that is not less."""
+    decade = 10.0 ** max(-1.0, np.floor(np.log10(max(least_mv, 1e-9))))
+    return float(next(decade * m for m in (1.0, 2.0, 5.0, 10.0) if decade * m >= least_mv))
 
 
 def draw_axes(painter: QPainter, scale: Scale, style: Style) -> None:
     """Numbers to the left of a plot and below it: mV, and ms from R."""
     font, colour = style.font(style.caption), style.palette.colour("soft_ink")
     left_room, line = axis_room(style)
-    step_mv = next(s for s in LEVEL_STEPS_MV if (scale.high_mv - scale.low_mv) / s < 7)
+    step_mv = _round_step((scale.high_mv - scale.low_mv) / MOST_LEVELS)
     levels = np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv
     for level in levels.tolist():
-        text = f"{signed(level, 1)}{NARROW}mV" if level else f"0{NARROW}mV"
+        digits = 1 if level and step_mv < 1.0 else 0
+        text = f"{signed(level, digits)}{NARROW}mV"
         top = float(scale.y(level)) - line / 2
         box = QRectF(scale.rect.left() - left_room, top, left_room - 4, line)
         draw_text(painter, box, text, font, colour, RIGHT)

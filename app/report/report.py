@@ -98,7 +98,7 @@ def _title(page: Page) -> None:
 
 
 def _recordings(page: Page, comparison: Comparison) -> None:
-    height, gap = mm(25.0), mm(4.0)
+    height, gap = mm(29.6), mm(4.0)
     strip = page.take(height, mm(2.5))
     width = (strip.width() - gap) / 2
     for place, (role, name, report) in enumerate(
@@ -124,12 +124,13 @@ def _recording_card(
     after_name = line.adjusted(mm(16), 0, 0, 0)
     draw_text(painter, after_name, when(recording.recorded_at), title, palette.colour("ink"))
     lines = [
-        person(subject.name, subject.id, subject.sex, subject.age_years),
+        subject.name or "no name in the file",
+        person(None, subject.id, subject.sex, subject.age_years),
         key_numbers(report.heart_rate_per_min, report.pr_ms, report.qrs_ms, report.qtc_ms),
         f"{beats_used(len(report.analysis.used), len(report.analysis.beats))} · "
         f"{plain(recording.duration_s, 1)} s at {recording.sampling_rate_hz:g} Hz",
-        f"{recording.source.name} ({recording.source.format}) · "
-        f"SHA-256 {recording.source.sha256[:16]}…",
+        f"SHA-256 {recording.source.sha256[:16]}… · {recording.source.format} · "
+        f"{recording.source.name}",
     ]
     font = style.font(style.body)
     for text in lines:

@@ -130,9 +130,14 @@ def write_ensemble(path: Path, ensemble: TorsoEnsemble) -> None:
 def _cubic_weights(
     at: NDArray[np.float64], grid: NDArray[np.float64]
 ) -> tuple[NDArray[np.int64], NDArray[np.float64]]:
-    """Four grid indices around each position and their weights, each of shape (n, 4)."""
-    place = np.clip((at - grid[0]) / (grid[1] - grid[0]), 0.0, grid.size - 1.0)
-    first = np.clip(np.floor(place).astype(np.int64), 1, grid.size - 3)
+    """Four grid indices around each position and their weights, each of shape (n, 4).
+
+    Beyond a border a node is taken as f(-1) = 3 f(0) - 3 f(1) + f(2), which keeps parabolas
+    (Keys 1981, IEEE Trans ASSP 29:1153).
+    """
+    last = grid.size - 1
+    place = np.clip((at - grid[0]) / (grid[1] - grid[0]), 0.0, float(last))
+    first = np.minimum(np.floor(place).astype(np.int64), last - 1)
     t = place - first
     weights = np.stack(
         [
@@ -143,4 +148,12 @@ def _cubic_weights(
         ],
         axis=1,
     )
-    return first[:, None] + np.arange(-1, 3)[None, :], weights
+    nodes = first[:, None] + np.arange(-1, 3)[None, :]
+    for beyond, outer, inner in (
+        (first == 0, 0, (1, 2, 3)),
+        (first == last - 1, 3, (2, 1, 0)),
+    ):
+        share = np.where(beyond, weights[:, outer], 0.0)
+        weights[:, inner] += share[:, None] * np.array([3.0, -3.0, 1.0])
+        weights[:, outer] -= share
+    return np.clip(nodes, 0, last), weights

@@ -27,10 +27,6 @@ def test_every_inner_node_is_hit(ensemble, variant):
     np.testing.assert_array_equal(found[1:-1, 1:-1], stored[1:-1, 1:-1])
 
 
-@pytest.mark.xfail(
-    strict=True,
-    reason="a border node is missed by the third difference there, up to 0.9 % of its factors",
-)
 @pytest.mark.parametrize("variant", VARIANTS)
 def test_every_border_node_is_hit(ensemble, variant):
     np.testing.assert_allclose(at_nodes(ensemble, variant), ensemble.chart[variant], atol=1e-6)

@@ -90,10 +90,10 @@ def _draw_landmarks(
     for electrode, name in names.items():
         left, up = sites[electrode]
         painter.setPen(QPen(palette.colour("soft_ink"), 0.8 * unit, Qt.PenStyle.DotLine))
-        painter.drawLine(at(left, HIGHEST_MM - 16.0), at(left, up + 9.0))
+        painter.drawLine(at(left, LOWEST_MM + 24.0), at(left, up - 26.0))
         width = text_width(name, font) + 4 * unit
         x = min(at(left, 0).x() - width / 2, at(layout.last_mm, 0).x() - width)
-        box = QRectF(x, at(0, HIGHEST_MM).y(), width, style.caption * 1.5)
+        box = QRectF(x, at(0, LOWEST_MM + 24.0).y(), width, style.caption * 1.5)
         draw_text(painter, box, name, font, palette.colour("soft_ink"), CENTRE)
 
 
@@ -157,7 +157,7 @@ def _name_shift(
     while any(box.intersects(label) for label in labels):
         box.translate(0, -height)
     labels.append(box)
-    draw_text(painter, box, text, font, style.palette.colour("later"), CENTRE)
+    draw_text(painter, box, text, font, style.palette.colour("ink"), CENTRE)
 
 
 def _ring(painter: QPainter, at: QPointF, style: Style) -> None:

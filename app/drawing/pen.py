@@ -64,6 +64,16 @@ def draw_paragraph(
     return painter.drawText(tall, flags, text).height()
 
 
+def paragraph_height(text: str, font: QFont, width: float) -> float:
+    """Height of a text over as many lines as it needs.
+
+    By layout alone: what a painter answers depends on where it paints.
+    """
+    flags = int(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignTop | Qt.TextFlag.TextWordWrap)
+    room = QRectF(0.0, 0.0, width, font.pixelSize() * 60.0)
+    return QFontMetricsF(font).boundingRect(room, flags, text).height()
+
+
 def text_width(text: str, font: QFont) -> float:
     """Width of one line of text."""
     return QFontMetricsF(font).horizontalAdvance(text)

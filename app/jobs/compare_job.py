@@ -6,7 +6,7 @@ import logging
 import threading
 import traceback
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 from PySide6.QtCore import QObject, QRunnable, QThreadPool, Signal
@@ -37,17 +37,21 @@ def compare_files(
 ) -> Comparison:
     """Read both recordings and compare them."""
     report_progress(0.0, "reading the recordings")
-    earlier, later = read_recording(request.earlier), read_recording(request.later)
-    times = earlier.recorded_at, later.recorded_at
-    if request.order_by_time and None not in times and times[0] > times[1]:  # type: ignore[operator]
-        earlier, later = later, earlier
     return compare(
-        earlier,
-        later,
+        read_recording(request.earlier),
+        read_recording(request.later),
         request.settings,
         report_progress=report_progress,
         should_stop=should_stop,
     )
+
+
+def in_order(request: CompareRequest) -> CompareRequest:
+    """The request with the older recording as the earlier, where both say when they were made."""
+    first, second = (read_recording(path).recorded_at for path in (request.earlier, request.later))
+    if first is None or second is None or first <= second:
+        return request
+    return replace(request, earlier=request.later, later=request.earlier)
 
 
 class CompareRunner(QObject):
@@ -57,6 +61,7 @@ class CompareRunner(QObject):
     """
 
     progressed = Signal(float, str)
+    ordered = Signal(object, object)  # paths of the earlier and the later, once told by time
     finished = Signal(object)
     failed = Signal(str, tuple)  # the reason, and the stops that may be lifted
     _came = Signal(object, str, object)
@@ -92,6 +97,9 @@ class CompareRunner(QObject):
         if kind == "progress":
             self.progressed.emit(*content)  # type: ignore[misc]
             return
+        if kind == "order":
+            self.ordered.emit(*content)  # type: ignore[misc]
+            return
         self._current = None
         if kind == "result":
             self.finished.emit(content)
@@ -110,9 +118,15 @@ class _Task(QRunnable):
         self._request, self._work, self._tell = request, work, tell
 
     def run(self) -> None:
-        """Do the work; whatever happens becomes one message."""
+        """Do the work, if it is still wanted; whatever happens becomes one message."""
+        if self.stop.is_set():
+            return
         try:
-            result = self._work(self._request, self._report, self.stop.is_set)
+            request = self._request
+            if request.order_by_time:
+                request = in_order(request)
+                self._tell(self, "order", (request.earlier, request.later))
+            result = self._work(request, self._report, self.stop.is_set)
         except Stopped:
             return
         except NotComparable as error:

@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from PySide6.QtCore import QRectF, Qt
-from PySide6.QtGui import QFont, QPainter, QPdfWriter, QPen
+from PySide6.QtCore import QRectF
+from PySide6.QtGui import QPainter, QPdfWriter, QPen
 
 from app.drawing.fonts import report_family
 from app.drawing.lead_plots import RIGHT
 from app.drawing.palette import LIGHT
-from app.drawing.pen import Style, draw_paragraph, draw_text
+from app.drawing.pen import Style, draw_paragraph, draw_text, paragraph_height
 from core.wording.caution import CAUTION, PLACEMENT_CAVEAT
 
 # The painter's units, so many to a millimetre; fonts are sized in whole ones.
@@ -94,7 +94,7 @@ class Page:
 
     def height_of(self, text: str) -> float:
         """Height of a paragraph over the whole width."""
-        return self._measure(text, self.style.font(self.style.body))
+        return paragraph_height(text, self.style.font(self.style.body), self.inner_width)
 
     def foot(self, number: int, of: int, made: str) -> None:
         """Caveat and cautions, and the page's number: on every page."""
@@ -118,17 +118,11 @@ class Page:
 
     @property
     def _foot_height(self) -> float:
-        return self._measure(FOOT, self.style.font(self.style.caption))
+        return paragraph_height(FOOT, self.style.font(self.style.caption), self.inner_width)
 
     @property
     def _last_line(self) -> float:
         return self.style.caption * 1.5
-
-    def _measure(self, text: str, font: QFont) -> float:
-        flags = int(Qt.AlignmentFlag.AlignLeft | Qt.TextFlag.TextWordWrap)
-        self.painter.setFont(font)
-        room = QRectF(self.left, 0.0, self.inner_width, self.height)
-        return self.painter.boundingRect(room, flags, text).height()
 
 
 def start_page(writer: QPdfWriter, painter: QPainter, *, first: bool) -> Page:

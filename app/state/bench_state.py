@@ -59,6 +59,11 @@ class BenchState(QObject):
         self._enter(Phase.EMPTY)
         self.pair_changed.emit()
 
+    def set_order(self, earlier: Path, later: Path) -> None:
+        """Which of the two chosen recordings is the earlier has been told by their times."""
+        self.earlier, self.later = earlier, later
+        self.pair_changed.emit()
+
     def begin(self) -> None:
         """The comparison of the chosen pair has started."""
         self.comparison = None
@@ -79,6 +84,7 @@ class BenchState(QObject):
 
     def refuse(self, reason: str, liftable_stops: tuple[str, ...] = ()) -> None:
         """The pair cannot be compared, unless the reader lifts what stops it."""
+        self.comparison = None
         self.refusal, self.liftable_stops = reason, liftable_stops
         self._enter(Phase.REFUSED)
 

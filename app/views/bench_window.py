@@ -48,9 +48,11 @@ class BenchWindow(QMainWindow):
         self.resize(1440, 900)
         self.state: BenchState = BenchState()
         self.runner = runner or CompareRunner()
+        self._order_by_time = False
         self.actions_list = Actions(self)
         self._lay_out()
         self.runner.progressed.connect(self.state.advance)
+        self.runner.ordered.connect(self.state.set_order)
         self.runner.finished.connect(self.state.finish)
         self.runner.failed.connect(self.state.refuse)
         self.verdict.cancelled.connect(self.stop_comparing)
@@ -133,13 +135,14 @@ class BenchWindow(QMainWindow):
         earlier, later = self.state.earlier, self.state.later
         if earlier is None or later is None:
             return
+        self._order_by_time = order_by_time
         self.state.begin()
         settings = Settings(lifted_stops=lifted_stops)
         self.runner.start(CompareRequest(earlier, later, settings, order_by_time))
 
     def lift_stops(self) -> None:
         """Compare in spite of what stopped this pair, this once."""
-        self._compare(lifted_stops=self.state.liftable_stops)
+        self._compare(order_by_time=self._order_by_time, lifted_stops=self.state.liftable_stops)
 
     def stop_comparing(self) -> None:
         """End the running comparison; the pair stays chosen."""
@@ -176,6 +179,7 @@ class BenchWindow(QMainWindow):
         """Open what was dropped."""
         paths = _records(paths)
         if len(paths) > 2:
+            self.runner.cancel()
             self.state.refuse(
                 f"{len(paths)} recordings were dropped; a comparison takes two. "
                 "Drop the two that are to be compared."

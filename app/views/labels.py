@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from html import escape
+
+from PySide6 import QtGui
 from PySide6.QtCore import QRect, QSize, Qt
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QLabel, QWidget
@@ -43,6 +46,13 @@ class WrappedLabel(QLabel):
 
     def _make_room(self) -> None:
         self.setFixedHeight(max(self.heightForWidth(max(self.width(), 80)), 1))
+
+
+def plain_tool_tip(text: str) -> str:
+    """A tool tip that shows a text as it is, though it may look like markup."""
+    if not QtGui.Qt.mightBeRichText(text):
+        return text
+    return f"<qt>{escape(text).replace(chr(10), '<br>')}</qt>"
 
 
 def label(

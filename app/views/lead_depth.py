@@ -14,7 +14,14 @@ from app.drawing.lead_plots import (
     draw_fiducials,
     draw_overlay,
 )
-from app.drawing.pen import Style, draw_mark, draw_paragraph, draw_text, text_width
+from app.drawing.pen import (
+    Style,
+    draw_mark,
+    draw_paragraph,
+    draw_text,
+    paragraph_height,
+    text_width,
+)
 from app.state.bench_state import BenchState
 from app.views.theme import screen_style
 from core.wording.judgements import WORDS
@@ -93,9 +100,7 @@ class LeadDepth(QWidget):
     def _reason_height(self, painter: QPainter, inside: QRectF, style: Style, reason: str) -> float:
         """Draw the reason at the bottom; the height that it takes."""
         font = style.font(style.body)
-        flags = int(Qt.AlignmentFlag.AlignLeft | Qt.TextFlag.TextWordWrap)
-        painter.setFont(font)
-        height = painter.boundingRect(inside, flags, reason).height()
+        height = paragraph_height(reason, font, inside.width())
         at = QRectF(inside.left(), inside.bottom() - height, inside.width(), height)
         draw_paragraph(painter, at, reason, font, style.palette.colour("ink"))
         return height

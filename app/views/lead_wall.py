@@ -34,7 +34,7 @@ class LeadWall(QWidget):
         self.setMinimumSize(400, 330)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
         self.setAccessibleName("Lead wall")
-        state.phase_changed.connect(self.update)
+        state.phase_changed.connect(self._follow)
         state.lead_changed.connect(self._follow)
         self._follow()
 
@@ -114,7 +114,9 @@ class LeadWall(QWidget):
 
     def _follow(self) -> None:
         comparison, lead = self._state.comparison, self._state.lead
+        said = ""
         if comparison is not None:
             result = comparison.leads[lead]
-            self.setAccessibleDescription(f"{lead}, {WORDS[result.judgement]}. {result.reason}")
+            said = f"{lead}, {WORDS[result.judgement]}. {result.reason}"
+        self.setAccessibleDescription(said)
         self.update()

@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QSizePolicy, QWidget
 from app.drawing.lead_plots import RIGHT
 from app.drawing.pen import draw_text, text_width
 from app.state.bench_state import BenchState
+from app.views.labels import plain_tool_tip
 from app.views.theme import BODY, screen_style
 from core.measures.report import RecordingReport
 from core.wording.recordings import beats_used, key_numbers, person, when
@@ -52,7 +53,7 @@ class RecordingCard(QWidget):
             return ""
         used = beats_used(len(report.analysis.used), len(report.analysis.beats))
         unusable = [f"{g.lead} {g.reason}" for g in report.quality if not g.usable]
-        return " · ".join([used, *unusable])
+        return " · ".join([*unusable, used])
 
     def paintEvent(self, event: QPaintEvent) -> None:
         """Draw the card."""
@@ -68,10 +69,15 @@ class RecordingCard(QWidget):
         line = QRectF(16, 8, self.width() - 28, 21)
         draw_text(painter, line, NAMES[self._role], bold, palette.colour(self._role))
         first, *rest = self.lines()
+        # The time stands whole; what limits the recording gives way to it, the file's name to both.
+        beside = line.adjusted(66, 0, 0, 0)
+        time, dot, _ = first.partition(" · ")
+        least = text_width(f"{time}{dot}…", bold) + 12
         limits = self.limits()
-        room = text_width(limits, plain) + 12 if limits else 0
-        draw_text(painter, line, limits, plain, palette.colour("soft_ink"), RIGHT)
-        draw_text(painter, line.adjusted(66, 0, -room, 0), first, bold, palette.colour("ink"))
+        room = min(text_width(limits, plain) + 12, beside.width() - least) if limits else 0
+        right = QRectF(line.right() - room, line.top(), room, line.height())
+        draw_text(painter, right, limits, plain, palette.colour("soft_ink"), RIGHT)
+        draw_text(painter, beside.adjusted(0, 0, -room, 0), first, bold, palette.colour("ink"))
         for text in rest:
             line.translate(0, 21)
             draw_text(painter, line, text, plain, palette.colour("soft_ink"))
@@ -83,7 +89,7 @@ class RecordingCard(QWidget):
 
     def _refresh(self) -> None:
         text = "\n".join([*self.lines(), self.limits()])
-        self.setToolTip(text)
+        self.setToolTip(plain_tool_tip(text))
         self.setAccessibleName(f"{NAMES[self._role]} recording")
         self.setAccessibleDescription(text)
         self.update()

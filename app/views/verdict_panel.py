@@ -16,6 +16,7 @@ BOTH_MISSING = (
     "Drop two recordings here, or open them from the File menu: WFDB, DICOM, EDF, BDF, SCP-ECG or "
     "a table (CSV)."
 )
+STOPPED = "The comparison was stopped. Swap the two, or open either again, to compare them."
 ONE_MISSING = "One recording is chosen. Drop the other here, or open it from the File menu."
 
 
@@ -70,7 +71,8 @@ class VerdictPanel(QWidget):
             overall = state.comparison.overall
             self._show(overall.sentence, overall.next_step)
         else:
-            self._show(QUESTION, ONE_MISSING if state.earlier or state.later else BOTH_MISSING)
+            missing = ONE_MISSING if state.earlier or state.later else BOTH_MISSING
+            self._show(QUESTION, STOPPED if state.has_pair else missing)
         self.update()
 
     def _show(self, sentence: str, next_step: str) -> None:

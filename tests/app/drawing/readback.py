@@ -9,6 +9,7 @@ from __future__ import annotations
 import io
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from functools import lru_cache
 from itertools import combinations
 from unicodedata import normalize
 
@@ -50,18 +51,23 @@ class Piece:
 
     @property
     def width(self) -> float:
-        name, _, weight = self.font.partition("-")
-        families = {family.replace(" ", ""): family for family in QFontDatabase.families()}
-        font = QFont(families.get(name, QGuiApplication.font().family()))
-        font.setPixelSize(MEASURED_AT)
-        font.setBold(weight == "Bold")
-        return QFontMetricsF(font).horizontalAdvance(self.text) * self.size / MEASURED_AT
+        return _metrics(self.font).horizontalAdvance(self.text) * self.size / MEASURED_AT
 
     @property
     def box(self) -> QRectF:
         """The ink of capitals and descenders, less than the line that holds it."""
         # Capitals are about 0.7 of a size high, descenders 0.2.
         return QRectF(self.left, self.baseline - 0.7 * self.size, self.width, 0.9 * self.size)
+
+
+@lru_cache
+def _metrics(font_name: str) -> QFontMetricsF:
+    name, _, weight = font_name.partition("-")
+    families = {family.replace(" ", ""): family for family in QFontDatabase.families()}
+    font = QFont(families.get(name, QGuiApplication.font().family()))
+    font.setPixelSize(MEASURED_AT)
+    font.setBold(weight == "Bold")
+    return QFontMetricsF(font)
 
 
 def pieces_of(page: PageObject) -> list[Piece]:
@@ -128,10 +134,11 @@ def _on_paper(width: float, height: float, draw: Callable[[QPainter], object]) -
 
 def lying_on_each_other(pieces: Iterable[Piece]) -> list[tuple[str, str]]:
     """Pairs of runs whose ink meets."""
+    boxes = [(piece.text, piece.box) for piece in pieces]
     return [
-        (one.text, other.text)
-        for one, other in combinations(pieces, 2)
-        if one.box.intersects(other.box)
+        (one, other)
+        for (one, its_box), (other, others_box) in combinations(boxes, 2)
+        if its_box.intersects(others_box)
     ]
 
 

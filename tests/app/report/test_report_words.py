@@ -3,49 +3,45 @@ from __future__ import annotations
 import pytest
 
 from app.report.report import write_report
+from core import Comparison
 from core.recordings.leads import CHEST_LEADS, TWELVE_LEADS
 from core.wording.caution import CAUTION, CAUTIONS, KNOWN_LIMITS, PLACEMENT_CAVEAT
 from core.wording.judgements import MEANINGS, WORDS
 from core.wording.numbers import plain, signed, signed_range
 from core.wording.recordings import key_numbers, when
-from tests.app.drawing.readback import pieces_of
+from tests.app.drawing.readback import Piece, pieces_of, words
 from tests.app.report.pages import open_pdf, rows_of, texts
 from tests.app.report.subjects import with_notices
 
-PAIRS = pytest.mark.parametrize("name", ["raised", "inferior", "steady", "medial"])
+
+@pytest.fixture(scope="module", params=["raised", "inferior", "steady", "medial"])
+def comparison(request) -> Comparison:
+    return request.getfixturevalue(request.param)
 
 
-@pytest.fixture
-def comparison(request, name):
-    return request.getfixturevalue(name)
+@pytest.fixture(scope="module")
+def pages(qapp, comparison) -> list[list[Piece]]:
+    """Each page's runs of text."""
+    return [pieces_of(page) for page in open_pdf(write_report(comparison)).pages]
 
 
-@pytest.fixture
-def content(qapp, comparison) -> bytes:
-    return write_report(comparison)
-
-
-@PAIRS
-def test_caveat_and_cautions_stand_on_every_page(content):
-    pages = texts(content)
-    assert len(pages) >= 2
-    for page in pages:
+def test_caveat_and_cautions_stand_on_every_page(pages):
+    assert len(pages) == 2
+    for page in map(words, pages):
         assert PLACEMENT_CAVEAT in page
         assert CAUTION in page
         for caution in CAUTIONS:
             assert caution in page
 
 
-@PAIRS
-def test_the_first_page_says_what_was_found_and_what_to_do(comparison, content):
-    first = texts(content)[0]
+def test_the_first_page_says_what_was_found_and_what_to_do(comparison, pages):
+    first = words(pages[0])
     assert " ".join(comparison.overall.sentence.split()) in first
     assert comparison.overall.next_step in first
 
 
-@PAIRS
-def test_the_first_page_says_whose_recordings_from_which_files(comparison, content):
-    first = texts(content)[0]
+def test_the_first_page_says_whose_recordings_from_which_files(comparison, pages):
+    first = words(pages[0])
     for report in (comparison.earlier, comparison.later):
         recording, subject = report.recording, report.recording.subject
         assert subject.id
@@ -58,9 +54,8 @@ def test_the_first_page_says_whose_recordings_from_which_files(comparison, conte
         assert key_numbers(*numbers) in first
 
 
-@PAIRS
-def test_the_table_holds_every_lead_with_its_word_and_numbers(comparison, content):
-    rows = rows_of(pieces_of(open_pdf(content).pages[1]))
+def test_the_table_holds_every_lead_with_its_word_and_numbers(comparison, pages):
+    rows = rows_of(pages[1])
     for lead in TWELVE_LEADS:
         result = comparison.leads[lead]
         expected = [lead, WORDS[result.judgement]]
@@ -71,9 +66,8 @@ def test_the_table_holds_every_lead_with_its_word_and_numbers(comparison, conten
         assert expected in rows
 
 
-@PAIRS
-def test_the_electrodes_table_holds_every_shift_with_its_range(comparison, content):
-    said = [" ".join(row) for row in rows_of(pieces_of(open_pdf(content).pages[1]))]
+def test_the_electrodes_table_holds_every_shift_with_its_range(comparison, pages):
+    said = [" ".join(row) for row in rows_of(pages[1])]
     for electrode in CHEST_LEADS:
         shift = comparison.placement.electrodes[electrode]
         cells = [
@@ -83,9 +77,8 @@ def test_the_electrodes_table_holds_every_shift_with_its_range(comparison, conte
         assert any(row.endswith(" ".join([electrode, *cells])) for row in said)
 
 
-@PAIRS
-def test_the_wall_names_and_judges_every_lead(comparison, content):
-    drawn = [piece.text for piece in pieces_of(open_pdf(content).pages[0])]
+def test_the_wall_names_and_judges_every_lead(comparison, pages):
+    drawn = [piece.text for piece in pages[0]]
     for lead in TWELVE_LEADS:
         assert lead in drawn
     for code, word in WORDS.items():
@@ -93,9 +86,8 @@ def test_the_wall_names_and_judges_every_lead(comparison, content):
         assert drawn.count(word) == len(held)
 
 
-@PAIRS
-def test_every_notice_is_in_it(comparison, content):
-    said = " ".join(texts(content))
+def test_every_notice_is_in_it(comparison, pages):
+    said = " ".join(map(words, pages))
     for notice in comparison.notices:
         assert notice.text in said
 

@@ -30,32 +30,43 @@ def likeness(one: np.ndarray, other: np.ndarray) -> float:
     return float(np.corrcoef(one, other)[0, 1])
 
 
-def in_all_directions(lead: str, mm: float) -> list[ElectrodeMove]:
-    return [
-        ElectrodeMove(lead, up_mm=up * mm, left_mm=left * mm)
-        for up, left in ((1, 0), (-1, 0), (0, 1), (0, -1))
-    ]
-
-
-def test_at_ten_millimetres_no_lead_loses_its_shape(recordings):
+def test_at_ten_millimetres_no_lead_loses_its_shape(in_place):
     """Kania 2014, Med Biol Eng Comput 52:109: shape alters clearly only past about 2 cm."""
-    for recording in recordings:
-        for row, lead in enumerate(CHEST_LEADS, start=6):
-            for move in in_all_directions(lead, 10.0):
-                before, after = moved_beats(recording, [move])
-                assert likeness(before[row], after[row]) > 0.9, (recording.source.name, move)
+    for lead in CHEST_LEADS:
+        before = in_place.lead(lead)
+        for up, left in ((10.0, 0.0), (-10.0, 0.0), (0.0, 10.0), (0.0, -10.0)):
+            after = in_place.moved(lead, up_mm=up, left_mm=left)
+            assert likeness(before, after) > 0.9, (lead, up, left)
 
 
-def test_v1_to_v4_lose_more_shape_than_v5_and_v6(recordings):
-    """Kania 2014: V2 most, then V3, V1, V4; V5 and V6 show mainly another amplitude."""
-    lost = {lead: [] for lead in CHEST_LEADS}
-    for recording in recordings:
-        for row, lead in enumerate(CHEST_LEADS, start=6):
-            for move in in_all_directions(lead, 40.0):
-                before, after = moved_beats(recording, [move])
-                lost[lead].append(1.0 - likeness(before[row], after[row]))
-    typical = {lead: float(np.median(values)) for lead, values in lost.items()}
-    assert min(typical[lead] for lead in ("V1", "V2", "V3")) > max(typical["V5"], typical["V6"])
+@pytest.mark.parametrize("by_mm", [30.0, 50.0])
+def test_v1_to_v4_lose_more_shape_than_v5_and_v6(in_place, by_mm):
+    """Kania 2014: V2 most, then V3, V1, V4; V5 and V6 show mainly another amplitude.
+
+    Mean over eight directions. Which of V1 to V4 loses most is a matter of the person.
+    """
+    kept = {lead: in_place.likeness(lead, by_mm) for lead in CHEST_LEADS}
+    assert max(kept[lead] for lead in ("V1", "V2", "V3", "V4")) < min(kept["V5"], kept["V6"])
+
+
+def test_v5_and_v6_show_mainly_another_amplitude(in_place):
+    """Kania 2014: of the change, one gain factor explains more in V5 and V6 than in V2 to V4."""
+    left = {}
+    for lead in ("V2", "V3", "V4", "V5", "V6"):
+        before, shares = in_place.lead(lead), []
+        for after in in_place.moved_all_round(lead, 30.0):
+            change = after - before
+            rest = change - (change @ before) / (before @ before) * before
+            shares.append(np.linalg.norm(rest) / np.linalg.norm(change))
+        left[lead] = np.mean(shares)
+    assert max(left["V5"], left["V6"]) < min(left["V2"], left["V3"], left["V4"])
+
+
+def test_shape_is_lost_with_the_way(in_place):
+    """Kania 2014, places up to 5 cm away."""
+    for lead in CHEST_LEADS:
+        kept = [in_place.likeness(lead, mm) for mm in (10.0, 20.0, 30.0, 50.0)]
+        assert (np.diff(kept) < 0).all()
 
 
 def test_v1_and_v2_two_spaces_up_change_as_much_as_on_body_surface_maps(recordings):

@@ -7,6 +7,7 @@ from functools import lru_cache
 import numpy as np
 import pytest
 
+from core.errors import ModelError
 from core.torso.boundary_elements import BodySolver, Region
 from core.torso.sphere import sphere_surface_potential
 from core.torso.surfaces import Surface, icosphere
@@ -124,5 +125,11 @@ def test_a_ball_in_a_shell_of_another_conductivity(inside):
 def test_an_open_surface_is_refused():
     sphere = icosphere(2)
     broken = Surface(sphere.points_m, sphere.triangles[1:])
-    with pytest.raises(Exception, match="open"):
+    with pytest.raises(ModelError, match="open"):
         BodySolver([Region(broken, 0.2, 0.0)])
+
+
+def test_a_surface_turned_inside_out_is_refused():
+    sphere = icosphere(2)
+    with pytest.raises(ModelError, match="inside out"):
+        BodySolver([Region(Surface(sphere.points_m, sphere.triangles[:, ::-1]), 0.2, 0.0)])

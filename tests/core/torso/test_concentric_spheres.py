@@ -85,7 +85,6 @@ def test_a_dipole_beside_an_inner_sphere_is_solved_to_one_per_cent(moment, insid
     plain = series(points, moment, inside_s_per_m=SHELL_S_PER_M)
     exact, plain = exact - exact.mean(), plain - plain.mean()
     error = np.linalg.norm(solved - exact)
-    print("E", error / np.linalg.norm(exact), error / np.linalg.norm(exact - plain))
     assert error < 0.01 * np.linalg.norm(exact)  # as asked of the plain sphere
     # What the inner sphere does is found, not just too small to matter.
     assert error < 0.1 * np.linalg.norm(exact - plain)

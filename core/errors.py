@@ -3,6 +3,7 @@
 SamespotError
   RecordingError     the file cannot be used (also a ValueError)
   ComparisonError    the recording was read, but cannot be measured or compared
+    NoTracing        a lead that is needed is flat, clipped or missing
     NotEnoughBeats   too short, too noisy or too irregular to measure
     NotComparable    a stop stands between the two recordings, such as two identifiers
     Stopped          the caller asked for the work to end
@@ -31,6 +32,10 @@ class ComparisonError(SamespotError):
 
 class NotEnoughBeats(ComparisonError):  # noqa: N818, it reads as what happened
     """Fewer usable beats than a measurement needs."""
+
+
+class NoTracing(ComparisonError):  # noqa: N818, as above
+    """A lead that is needed holds no usable tracing."""
 
 
 class NotComparable(ComparisonError):  # noqa: N818, as above

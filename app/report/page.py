@@ -17,6 +17,7 @@ from core.wording.caution import CAUTION, PLACEMENT_CAVEAT
 PER_MM = 100.0
 MM_PER_POINT = 25.4 / 72.0
 MARGIN_MM = 14.0
+PAGE_NUMBER_MM = 20.0
 FOOT = f"{PLACEMENT_CAVEAT}\n{CAUTION}"
 
 
@@ -113,7 +114,7 @@ class Page:
         )
         line = self._last_line
         last = QRectF(self.left, self.height - mm(MARGIN_MM) - line, self.inner_width, line)
-        draw_text(painter, last, made, font, soft)
+        draw_text(painter, last.adjusted(0, 0, -mm(PAGE_NUMBER_MM), 0), made, font, soft)
         draw_text(painter, last, f"page {number} of {of}", font, soft, RIGHT)
 
     @property

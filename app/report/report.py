@@ -62,11 +62,15 @@ def write_report(comparison: Comparison) -> bytes:
 
 
 def _made(comparison: Comparison) -> str:
-    made_at = when(comparison.made_at)
+    """Whose recordings, by what and when: a page that is parted from the others tells them."""
     model = comparison.placement
+    identifiers = dict.fromkeys(
+        report.recording.subject.id or "no identifier"
+        for report in (comparison.earlier, comparison.later)
+    )
     return (
-        f"{PROGRAM_NAME} {program_version()} · {model.model_name} {model.model_version} · "
-        f"made {made_at}"
+        f"{' and '.join(identifiers)} · {PROGRAM_NAME} {program_version()} · "
+        f"{model.model_name} {model.model_version} · made {when(comparison.made_at)}"
     )
 
 
@@ -288,7 +292,9 @@ def _placement(page: Page, comparison: Comparison) -> None:
 def _share(probability: float) -> str:
     percent = 100.0 * probability
     return (
-        "under 0.1 %"
+        "over 99 %"
+        if percent > 99
+        else "under 0.1 %"
         if percent < 0.1
         else f"{percent:.1f} %"
         if percent < 10

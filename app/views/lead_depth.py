@@ -73,14 +73,15 @@ class LeadDepth(QWidget):
         plots = inside.adjusted(across, 32, 0, -reason_height - 8)
         labels = QRectF(plots.left(), plots.top(), plots.width(), 18)
         legend = 20.0
-        for_plots = plots.height() - labels.height() - 2 * (below + legend)
+        gap = below / 2  # the topmost number of an axis rises by half its height above the plot
+        for_plots = plots.height() - labels.height() - 2 * (below + legend) - gap
         overlay = QRectF(plots.left(), labels.bottom(), plots.width(), for_plots * 0.60)
         scale = draw_overlay(painter, overlay, comparison, lead, style, every=1)
         draw_axes(painter, scale, style)
         draw_fiducials(painter, scale, comparison, style, labels)
         row = QRectF(inside.left(), overlay.bottom() + below, inside.width(), legend)
         _draw_legend(painter, row, style, LEGEND)
-        difference = QRectF(plots.left(), row.bottom(), plots.width(), for_plots * 0.40)
+        difference = QRectF(plots.left(), row.bottom() + gap, plots.width(), for_plots * 0.40)
         draw_axes(painter, draw_difference(painter, difference, comparison, lead, style), style)
         row.moveTop(difference.bottom() + below)
         _draw_legend(painter, row, style, DIFFERENCE_LEGEND)

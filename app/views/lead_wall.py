@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QRectF, QSize, Qt
-from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent
+from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
 
 from app.drawing.lead_plots import GRID_OF_CELLS, draw_lead_cell
@@ -49,6 +49,11 @@ class LeadWall(QWidget):
         height = (self.height() - NOTE_HEIGHT - (rows - 1) * GAP) / rows
         return QRectF(column * (width + GAP), row * (height + GAP), width, height)
 
+    def cell_of(self, lead: str) -> QRectF:
+        """Where a lead's cell lies."""
+        row = next(index for index, leads in enumerate(BY_WALL) if lead in leads)
+        return self.cell(row, BY_WALL[row].index(lead))
+
     def lead_at(self, x: float, y: float) -> str | None:
         """The lead under a point."""
         for row, leads in enumerate(BY_WALL):
@@ -75,6 +80,10 @@ class LeadWall(QWidget):
                     style,
                     selected=lead == self._state.lead,
                 )
+        if self.hasFocus():
+            painter.setPen(QPen(style.palette.colour("earlier"), 2, Qt.PenStyle.DotLine))
+            painter.setBrush(Qt.BrushStyle.NoBrush)
+            painter.drawRect(self.cell_of(self._state.lead).adjusted(4, 4, -4, -4))
         note = QRectF(0, self.height() - NOTE_HEIGHT, self.width(), NOTE_HEIGHT)
         font = style.font(style.caption)
         draw_text(painter, note, GRID_OF_CELLS, font, style.palette.colour("soft_ink"))

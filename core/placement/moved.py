@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from core.errors import NoTracing
 from core.measures.report import RecordingReport, measure
 from core.placement.person import Person, shift_electrode, weigh_ensemble
 from core.quality.lead_quality import LeadQuality
@@ -82,12 +83,20 @@ def move_electrodes(
         If an electrode is named twice.
     NotEnoughBeats
         If the recording has too few beats to tell how this person's leads vary.
+    NoTracing
+        If a lead whose electrode is moved holds no usable tracing.
     """
     moves = list(moves)
     electrodes = [move.electrode for move in moves]
     if len(set(electrodes)) < len(electrodes):
         raise ValueError(f"an electrode is moved twice: {', '.join(electrodes)}")
     report = measure(recording, settings)
+    for grade in report.quality:
+        if grade.lead in electrodes and not grade.usable:
+            raise NoTracing(
+                f"{recording.source.name}: lead {grade.lead} holds no usable tracing "
+                f"({grade.reason}), so moving its electrode foretells nothing. Move another one."
+            )
     person = weigh_ensemble(
         load_ensemble(), [ventricular_beat_mv(report)], usable_independent(report.quality)
     )

@@ -94,8 +94,7 @@ def read_dicom(path: Path) -> Recording:
         raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
-            f"{name}: the DICOM file is damaged ({type(error).__name__}). "
-            "Export it again from where it is stored."
+            f"{name}: the DICOM file is damaged. Export it again from where it is stored."
         ) from error
     if not groups:
         kind = dataset.get("Modality") or "no modality"

@@ -27,7 +27,9 @@ def plain(value: float | None, digits: int = 0) -> str:
 
 
 def signed_range(low: float | None, high: float | None, digits: int = 2) -> str:
-    """``"−0.10 to +0.12"``."""
+    """``"−0.10 to +0.12"``; one dash where there is no range."""
+    if low is None and high is None:
+        return NONE
     return f"{signed(low, digits)} to {signed(high, digits)}"
 
 

@@ -72,16 +72,28 @@ def test_no_displacement_foretells_nothing_and_doubts_nothing(in_place, electrod
     assert (found.gain == 0.0).all()
 
 
+def source_of(report, name: str, electrode: int) -> np.ndarray:
+    """The eight leads at the instant that a measure of one lead is read at."""
+    eight, qrs = report.beat_mv[INDEPENDENT_ROWS], report.points.qrs_window()
+    if name == "t_mv":
+        return eight[:, report.points.fiducials.t_peak]
+    if name == "r_mv":
+        return eight[:, qrs][:, eight[2 + electrode, qrs].argmax()]
+    if name == "s_mv":
+        return eight[:, qrs][:, eight[2 + electrode, qrs].argmin()]
+    return report.values[name][INDEPENDENT_ROWS]
+
+
+@pytest.mark.parametrize("name", COMPARED)
 @pytest.mark.parametrize("electrode", [0, 3, 5])
-def test_the_model_s_doubt_has_the_source_s_size(cedar, electrode):
-    """Eight values of one instant, and a prior scaled to them by hand."""
+def test_the_model_s_doubt_has_the_source_s_size(cedar, electrode, name):
+    """A prior scaled by hand to the eight leads that the measure hangs on."""
     person, report = cedar.person, cedar.report
     draws = some_draws(person, 8, electrode)
     found = foretell_measures(person, report, electrode, draws)
-    values = report.values["st_mv"][INDEPENDENT_ROWS]
+    source = source_of(report, name, electrode)
     for n, position in enumerate(draws.variant):
         variant = person.variants[position]
-        scale = np.sqrt(values @ variant.precision @ values / 8)
         variance = shift_electrode(
             person,
             variant,
@@ -89,7 +101,8 @@ def test_the_model_s_doubt_has_the_source_s_size(cedar, electrode):
             left_mm=draws.left_mm[[n]],
             up_mm=draws.up_mm[[n]],
         ).variance[0]
-        assert found.model_sd["st_mv"][n] == pytest.approx(scale * np.sqrt(variance), rel=1e-9)
+        doubt = np.sqrt(source @ variant.precision @ source / 8 * variance)
+        assert found.model_sd[name][n] == pytest.approx(doubt, rel=1e-9)
 
 
 @pytest.mark.parametrize("move", [ElectrodeMove("V2", up_mm=40.0), ElectrodeMove("V4", -30.0, 10)])

@@ -4,14 +4,14 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from scipy.stats import norm
+from scipy.stats import chisquare, norm
 
 from core import Settings, Spread
 from core.measures.lead_values import measure_lead_values
 from core.measures.repeat_noise import repeat_noise
 from core.placement.foretell import INDEPENDENT_ROWS
 from core.placement.person import shift_electrode
-from core.placement.reach import placement_reach
+from core.placement.reach import draw_shifts, placement_reach
 
 SLOW_DRAWS, FAST_DRAWS = 1200, 10_000
 
@@ -70,6 +70,15 @@ def test_each_end_has_its_share_of_draws_beyond_it(cedar, electrode, confidence)
             else:  # shifts reach less far than the repeat noise, which is then the reach
                 assert share < tail + scatter
     assert compared >= 2  # of four ends
+
+
+def test_variants_are_drawn_by_their_weights(cedar):
+    n = 40_000
+    draws = draw_shifts(cedar.person, Settings(draws=n), np.random.default_rng(6))
+    counts = np.bincount(draws.variant, minlength=len(cedar.person.variants))
+    assert chisquare(counts, n * cedar.person.weights).pvalue > 1e-3
+    # Equal shares would be told from these.
+    assert chisquare(counts).pvalue < 1e-6
 
 
 def test_a_spread_in_one_direction_draws_no_shift_in_the_other(cedar):

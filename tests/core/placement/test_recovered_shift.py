@@ -9,7 +9,7 @@ import numpy as np
 import pytest
 from scipy.stats import binomtest
 
-from core import Settings
+from core import Settings, Spread
 from core.placement.estimate import EFFECTIVE_SAMPLES, ShiftPosterior, estimate_shifts
 from core.recordings.leads import CHEST_LEADS
 from tests.core.placement.one_variant import OneVariant, one_variant
@@ -121,6 +121,22 @@ def test_a_limb_lead_that_changed_makes_every_shift_less_sure():
     assert stirred.log_support < calm.log_support
     widths = [np.ptp(one.range_of(one.up_mm, 0.95)[1:]) for one in (calm, stirred)]
     assert widths[1] > widths[0]
+
+
+def test_a_direction_without_spread_is_not_moved_in():
+    someone = one_variant(0, seed=13)
+    sources, earlier = someone.leads(20)
+    later = earlier.copy()
+    later[3] += someone.field_change(sources, V2, 40.0, 40.0)
+    for spread, still, free in (
+        (Spread(left=0.0, up=22.0), "left_mm", "up_mm"),
+        (Spread(left=22.0, up=0.0), "up_mm", "left_mm"),
+    ):
+        settings = Settings(spread_mm=spread)
+        found = estimate_shifts(someone.person, earlier, later, settings)["V2"]
+        # A cell of the grid, 8 mm, is as near as it tells.
+        assert abs(found.range_of(getattr(found, still), 0.95)[0]) < 8.0
+        assert abs(found.range_of(getattr(found, free), 0.95)[0]) > 8.0
 
 
 def test_the_gain_of_both_tracings_hardly_matters():

@@ -75,6 +75,9 @@ def test_a_lead_that_cannot_be_used_says_nothing(cedar, row):
     )
     assert_same(plain, other)
     for variant in plain.variants:
+        assert (variant.factors[row] == 0).all()
+        # The usable leads' mean prior variance is the unit of every scale.
+        assert np.sum(variant.factors**2) == pytest.approx(7.0)
         assert (variant.to_gain[:, row] == 0).all()
         assert plain.source_scale(variant, spoilt) == pytest.approx(
             plain.source_scale(variant, cedar.beat_mv), rel=1e-12

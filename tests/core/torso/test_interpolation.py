@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -30,6 +32,19 @@ def test_every_inner_node_is_hit(ensemble, variant):
 @pytest.mark.parametrize("variant", VARIANTS)
 def test_every_border_node_is_hit(ensemble, variant):
     np.testing.assert_allclose(at_nodes(ensemble, variant), ensemble.chart[variant], atol=1e-6)
+
+
+def test_a_parabola_is_kept_up_to_the_border(ensemble):
+    """Keys 1981: a border node's missing neighbour is taken from the parabola through three."""
+    left, up = np.meshgrid(ensemble.left_mm / 100, ensemble.up_mm / 100)
+    made = replace(ensemble, chart=(left**2 - 0.5 * left * up - up**2)[None, ..., None])
+    first, last = ensemble.left_mm[[0, -1]]
+    bottom, top = ensemble.up_mm[[0, -1]]
+    at_left = np.array([first + 3.0, last - 4.0, 10.0, 10.0, last - 7.0])
+    at_up = np.array([0.0, 0.0, bottom + 6.0, top - 2.0, top - 1.0])
+    x, y = at_left / 100, at_up / 100
+    found = made.chest_factors(0, at_left, at_up)[:, 0]
+    np.testing.assert_allclose(found, x**2 - 0.5 * x * y - y**2, atol=1e-9)
 
 
 @pytest.mark.parametrize("variant", VARIANTS)

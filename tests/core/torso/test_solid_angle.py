@@ -49,6 +49,19 @@ def test_a_closed_surface_is_half_seen_from_a_point_on_it():
     np.testing.assert_allclose(angles.sum(axis=1), 2 * np.pi, atol=1e-9)
 
 
+@pytest.mark.parametrize("near", [0.1, 1e-3, 1e-6])
+def test_a_triangle_close_by_fills_half_of_all_that_is_seen(near):
+    """Of a tetrahedron seen from within, one face from close by: more than pi, up to 2 pi."""
+    faces = np.array([[0, 1, 2], [0, 2, 3], [0, 3, 1], [3, 2, 1]])
+    corners = np.array([[0.0, 0, 0], [0, 1, 0], [1, 0, 0], [0, 0, 1]])[faces]
+    inside = corners[3].mean(axis=0) - near / np.sqrt(3)
+    angles = solid_angles(inside[None], corners)[0]
+    assert angles.sum() == pytest.approx(4 * np.pi, abs=1e-9)
+    assert np.pi < angles[3] < 2 * np.pi
+    # The other three faces are left with what a disc as wide as the face lets pass.
+    assert 2 * np.pi - angles[3] < 2 * np.pi * near / 0.4
+
+
 def test_every_row_of_a_surface_on_itself_sums_to_a_half_space():
     sphere = icosphere(3)
     rows = point_weights(sphere.points_m, sphere, own=True).sum(axis=1)

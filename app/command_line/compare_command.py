@@ -7,13 +7,14 @@ import sys
 from typing import Any
 
 from app.command_line.failures import CommandFailed
-from app.command_line.outputs import as_json, refuse_two_to_standard_output, write_output
+from app.command_line.outputs import refuse_two_to_standard_output, write_output
 from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import comparison_summary
 from core import Comparison, Settings, Spread, compare
 from core.comparison.refused import refused_comparison
 from core.comparison.table import comparison_csv
 from core.errors import ComparisonError, NotComparable
+from core.json_numbers import as_json
 
 
 def add_to(commands: Any) -> None:

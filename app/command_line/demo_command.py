@@ -9,9 +9,10 @@ from typing import Any
 from app.command_line.compare_command import report_pdf
 from app.command_line.display import display_answers
 from app.command_line.failures import CommandFailed
-from app.command_line.outputs import as_json, say, write_output
+from app.command_line.outputs import say, write_output
 from app.command_line.summaries import comparison_summary
 from core import compare, read_recording
+from core.json_numbers import as_json
 from core.shipped_files import samples_folder
 
 DEFAULT_FOLDER = "samespot-demo"

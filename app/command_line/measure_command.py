@@ -6,10 +6,11 @@ import argparse
 import sys
 from typing import Any
 
-from app.command_line.outputs import as_json, write_output
+from app.command_line.outputs import write_output
 from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import recording_summary
 from core import measure
+from core.json_numbers import as_json
 
 
 def add_to(commands: Any) -> None:

@@ -2,21 +2,13 @@
 
 from __future__ import annotations
 
-import json
 import sys
 from pathlib import Path
-from typing import Any
 
 from app.command_line.failures import CommandFailed
 from core.files import write_atomically
 
 STANDARD_OUTPUT = "-"
-
-
-def as_json(content: dict[str, Any]) -> bytes:
-    """A result as JSON text; NaN is refused rather than written."""
-    text = json.dumps(content, ensure_ascii=False, indent=1, allow_nan=False)
-    return (text + "\n").encode()
 
 
 def write_output(target: str, content: bytes) -> None:

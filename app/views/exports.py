@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import json
 from pathlib import Path
 
 from app.report.report import write_report
 from core.comparison.results import Comparison
 from core.comparison.table import comparison_csv
 from core.files import write_atomically
+from core.json_numbers import as_json
 
 
 def write_pdf(path: Path, comparison: Comparison) -> None:
@@ -18,8 +18,7 @@ def write_pdf(path: Path, comparison: Comparison) -> None:
 
 def write_json(path: Path, comparison: Comparison) -> None:
     """Write the comparison as JSON."""
-    text = json.dumps(comparison.to_dict(), ensure_ascii=False, indent=1, allow_nan=False)
-    write_atomically(path, text.encode())
+    write_atomically(path, as_json(comparison.to_dict()))
 
 
 def write_csv(path: Path, comparison: Comparison) -> None:

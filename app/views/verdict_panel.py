@@ -13,8 +13,8 @@ from app.views.theme import BODY, SENTENCE, current_palette
 
 QUESTION = "Two ECGs of one person differ: is it the heart, or did the electrodes move?"
 BOTH_MISSING = (
-    "Drop two recordings here, or open them from the File menu: WFDB, DICOM, EDF, BDF, SCP-ECG or "
-    "a table (CSV)."
+    "Drop two recordings here, or open them from the File menu: WFDB, DICOM, EDF, BDF, SCP-ECG, "
+    "HL7 aECG or a table (CSV)."
 )
 STOPPED = "The comparison was stopped. Swap the two, or open either again, to compare them."
 ONE_MISSING = "One recording is chosen. Drop the other here, or open it from the File menu."

@@ -7,6 +7,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 from core.errors import RecordingError
+from core.recordings.aecg_reader import looks_like_aecg, read_aecg
 from core.recordings.csv_reader import looks_like_csv, read_csv
 from core.recordings.dicom_reader import looks_like_dicom, read_dicom
 from core.recordings.edf_reader import looks_like_edf, read_edf
@@ -21,6 +22,7 @@ _READERS: tuple[tuple[Callable[[bytes], bool], Callable[[Path], Recording]], ...
     (looks_like_dicom, read_dicom),
     (looks_like_scp, read_scp),
     (looks_like_edf, read_edf),
+    (looks_like_aecg, read_aecg),
     (looks_like_wfdb_header, read_wfdb),
 )
 

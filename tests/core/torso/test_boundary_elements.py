@@ -56,9 +56,11 @@ def test_the_sphere_is_solved_to_one_per_cent_with_812_points(eccentricity, mome
 
 @pytest.mark.parametrize("moment", [RADIAL, TANGENTIAL], ids=["radial", "tangential"])
 def test_the_error_falls_as_the_mesh_is_refined(moment):
-    errors = np.array([relative_error(f, 0.5, moment) for f in (3, 6, 12)])
+    frequencies = np.array([3, 6, 9])
+    errors = [relative_error(int(f), 0.5, moment) for f in frequencies]
+    order = -np.diff(np.log(errors)) / np.diff(np.log(frequencies))
     # Collocation on linear triangles converges at least linearly (de Munck 1992 finds more).
-    assert (errors[:-1] / errors[1:] > 2.0).all()
+    assert (order > 1.0).all()
 
 
 def test_two_dipoles_add_up():
@@ -110,13 +112,13 @@ def shell_potential(cosine, *, inner_m, inside, outside) -> np.ndarray:
 
 @pytest.mark.parametrize("inside", [0.05, 0.6])
 def test_a_ball_in_a_shell_of_another_conductivity(inside):
-    skin, inner = ball(RADIUS_M, 9), ball(0.05, 7)
+    skin, inner = ball(RADIUS_M, 7), ball(0.05, 5)
     solver = BodySolver([Region(skin, 0.2, 0.0), Region(inner, inside, 0.2)])
     axis = np.array([0.36, -0.48, 0.8])
     # The solver's sources lie outside inner regions, so the dipole's field there is scaled by
     # the medium that it is in: unit dipoles times conductivity are the same in both.
     solved = solver.skin_potential(np.array([[0.0, 0.0, 0.0]])) @ axis
-    cosine = icosphere(9).points_m @ axis
+    cosine = icosphere(7).points_m @ axis
     exact = shell_potential(cosine, inner_m=0.05, inside=inside, outside=0.2)
     error = np.linalg.norm(solved - exact) / np.linalg.norm(exact)
     assert error < 0.01  # as asked of the plain sphere

@@ -16,7 +16,10 @@ from core.recordings.scp.container import looks_like_scp
 from core.recordings.scp.reader import read_scp
 from core.recordings.wfdb_reader import looks_like_wfdb_header, read_wfdb
 
-READABLE = "a WFDB record, a DICOM ECG waveform, an EDF, BDF or SCP-ECG file, or a table (CSV)"
+READABLE = (
+    "a WFDB record, a DICOM ECG waveform, an EDF, BDF or SCP-ECG file, an annotated ECG (HL7 "
+    "aECG), or a table (CSV)"
+)
 # Recognised by content, the surest signs first; a table is any text that names leads.
 _READERS: tuple[tuple[Callable[[bytes], bool], Callable[[Path], Recording]], ...] = (
     (looks_like_dicom, read_dicom),

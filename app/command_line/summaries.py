@@ -69,6 +69,10 @@ def recording_summary(report: RecordingReport) -> str:
         ]
         cells = "".join(f"{signed(None if n != n else float(n)):>8}" for n in numbers)
         lines.append(f"{lead:<6}{cells}{plain(float(report.noise_uv[row])):>15}")
+    further = report.to_dict()["further_measures"]
+    for lead, numbers in further.items():
+        told = (numbers[name] for name in ("j_mv", "st_mv", "t_mv", "r_mv", "s_mv"))
+        lines.append(f"{lead:<6}" + "".join(f"{signed(number):>8}" for number in told))
     lines += ["", *_notice_lines(report.notices), *CAUTIONS]
     return "\n".join(lines) + "\n"
 

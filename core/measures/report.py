@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from core.beats.analyse import BeatAnalysis, analyse_beats
 from core.beats.fiducials import find_fiducials
+from core.beats.further import average_further_leads
 from core.conditioning.calm import calm_outside_qrs
 from core.json_numbers import number_or_none, numbers_or_none
 from core.measures.intervals import corrected_qt_ms
@@ -25,6 +26,7 @@ from core.notices import Notice
 from core.quality.faults import Fault, find_faults
 from core.quality.lead_quality import LeadQuality, grade_leads
 from core.quality.limb_algebra import limb_lead_contradiction_mv
+from core.quality.right_leg import right_leg_interchange
 from core.recordings.leads import TWELVE_LEADS, independent_from_twelve, twelve_from_independent
 from core.recordings.recording import Recording
 from core.settings import Settings
@@ -50,6 +52,8 @@ class RecordingReport:
     beat_values : dict of name to ndarray, shape (n_used, 12)
         The same of every beat used.
     q_mv, p_mv, noise_uv : ndarray, shape (12,)
+    further_values : dict of name to ndarray, shape (n_further,)
+        The measures of the recording's further leads.
     """
 
     recording: Recording
@@ -65,6 +69,7 @@ class RecordingReport:
     quality: tuple[LeadQuality, ...]
     rr_s: float
     notices: tuple[Notice, ...]
+    further_values: dict[str, NDArray[np.float64]]
 
     @property
     def step_ms(self) -> float:
@@ -155,6 +160,10 @@ class RecordingReport:
                 analysis.r_index, recording.sampling_rate_hz
             ),
             "leads": {lead: self._lead_dict(row) for row, lead in enumerate(TWELVE_LEADS)},
+            "further_measures": {
+                lead: {name: number_or_none(v[row]) for name, v in self.further_values.items()}
+                for row, lead in enumerate(recording.further_leads)
+            },
             "representative_beat": {
                 "start_ms": float(self.time_ms[0]),
                 "step_ms": self.step_ms,
@@ -204,6 +213,7 @@ def describe(recording: Recording, notices: tuple[Notice, ...] = ()) -> dict[str
                 "spatial",
                 "fiducials_ms",
                 "leads",
+                "further_measures",
                 "representative_beat",
             )
         ),
@@ -249,6 +259,8 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     residual_mv = twelve_from_independent(analysis.aligned_mv - analysis.representative_mv)
     _, _, q_mv = qrs_waves(beat_mv[:, points.qrs_window()])
     quality = grade_leads(recording)
+    first = fiducials.qrs_onset if fiducials.p_onset is None else fiducials.p_onset
+    flat = right_leg_interchange(beat_mv[:3, first : fiducials.t_offset + 1])
     faults = find_faults(
         TWELVE_LEADS,
         twelve_from_independent(analysis.residual_mv),
@@ -269,8 +281,22 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         noise_uv=1000.0 * np.sqrt(np.mean(residual_mv**2, axis=(0, 2))),
         quality=quality,
         rr_s=float(np.mean(np.diff([beat.r_time_s for beat in analysis.beats]))),
-        notices=(*recording.notices, *_notices(recording, analysis, quality, points, faults)),
+        notices=(*recording.notices, *_notices(recording, analysis, quality, points, faults, flat)),
+        further_values=_further_values(recording, analysis, points),
     )
+
+
+def _further_values(
+    recording: Recording, analysis: BeatAnalysis, points: Points
+) -> dict[str, NDArray[np.float64]]:
+    if not recording.further_leads:
+        return {}
+    average = average_further_leads(recording.further_mv.T, analysis)
+    f = points.fiducials
+    calm = calm_outside_qrs(
+        average, f.qrs_onset, f.qrs_offset, sampling_rate_hz=recording.sampling_rate_hz
+    )
+    return measure_lead_values(calm - isoelectric_level(calm, points), points)
 
 
 def _axis(area: NDArray[np.float64]) -> float | None:
@@ -293,6 +319,7 @@ def _notices(
     quality: tuple[LeadQuality, ...],
     points: Points,
     faults: tuple[Fault, ...],
+    flat: tuple[str, str] | None,
 ) -> tuple[Notice, ...]:
     found = []
     left_out = [beat.why_not for beat in analysis.beats if beat.why_not is not None]
@@ -312,4 +339,6 @@ def _notices(
         found.append(say.no_p_wave())
     if analysis.paced:
         found.append(say.paced())
+    if flat is not None:
+        found.append(say.right_leg_interchanged(*flat))
     return tuple(found)

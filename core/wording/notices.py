@@ -148,6 +148,16 @@ def chest_interchanged(electrodes: Sequence[str]) -> Notice:
     )
 
 
+def right_leg_interchanged(flat_lead: str, arm: str) -> Notice:
+    """An arm cable is on the right leg."""
+    return Notice(
+        "right-leg-interchanged",
+        "stop",
+        f"Lead {flat_lead} alone is flat, as when the {arm} and RL cables are interchanged: no "
+        "lead is then what it says. Check the cables and record again.",
+    )
+
+
 def looks_interchanged(electrodes: Sequence[str], *, of_limbs: bool) -> Notice:
     """Electrodes that look interchanged by one recording's own evidence."""
     subject = (

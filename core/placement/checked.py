@@ -6,6 +6,7 @@ from dataclasses import replace
 
 from core.measures.report import RecordingReport, measure
 from core.placement.own_evidence import interchange_by_own_evidence
+from core.recordings.cleanest import cleanest_stretch
 from core.recordings.recording import Recording
 from core.settings import Settings
 from core.torso.ensemble import load_ensemble
@@ -13,14 +14,16 @@ from core.wording import notices as say
 
 
 def measure_and_check(recording: Recording, settings: Settings | None = None) -> RecordingReport:
-    """Measure a recording; a notice is added where electrodes look interchanged.
+    """Measure a recording, or the cleanest ten seconds of one longer than five minutes.
+
+    A notice is added where electrodes look interchanged.
 
     Raises
     ------
     NotEnoughBeats
         If fewer than three beats of one kind can be used.
     """
-    report = measure(recording, settings)
+    report = measure(cleanest_stretch(recording), settings)
     if not all(grade.usable for grade in report.quality):
         return report  # a lead without a tracing looks like a rearranged one
     found = interchange_by_own_evidence(report, load_ensemble())

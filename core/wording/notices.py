@@ -19,6 +19,17 @@ def limb_leads_derived(derived: Sequence[str]) -> Notice:
     )
 
 
+def stretch_chosen(start_s: float, length_s: float, duration_s: float) -> Notice:
+    """Ten seconds of a long recording were taken."""
+    minutes, seconds = divmod(round(start_s), 60)
+    return Notice(
+        "stretch-chosen",
+        "info",
+        f"The recording lasts {duration_s / 60:.0f} min; its cleanest {length_s:.0f} s are used, "
+        f"from {minutes}:{seconds:02d} min on.",
+    )
+
+
 def beats_left_out(reasons: Sequence[str], n_beats: int) -> Notice:
     """Some beats are not in the representative beat."""
     counted = [f"{reasons.count(reason)} {reason}" for reason in dict.fromkeys(reasons)]

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QRectF, QSize
-from PySide6.QtGui import QPainter, QPaintEvent, QPen
+from PySide6.QtCore import QRectF, QSize, Qt
+from PySide6.QtGui import QFontMetricsF, QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from app.drawing.lead_plots import RIGHT
@@ -71,13 +71,17 @@ class RecordingCard(QWidget):
         first, *rest = self.lines()
         # The time stands whole; what limits the recording gives way to it, the file's name to both.
         beside = line.adjusted(66, 0, 0, 0)
-        time, dot, _ = first.partition(" · ")
+        time, dot, name = first.partition(" · ")
         least = text_width(f"{time}{dot}…", bold) + 12
         limits = self.limits()
         room = min(text_width(limits, plain) + 12, beside.width() - least) if limits else 0
         right = QRectF(line.right() - room, line.top(), room, line.height())
         draw_text(painter, right, limits, plain, palette.colour("soft_ink"), RIGHT)
-        draw_text(painter, beside.adjusted(0, 0, -room, 0), first, bold, palette.colour("ink"))
+        # Names of one person's files differ at their ends, so the middle is left out.
+        for_name = beside.width() - room - text_width(time + dot, bold)
+        name = QFontMetricsF(bold).elidedText(name, Qt.TextElideMode.ElideMiddle, for_name)
+        shown = beside.adjusted(0, 0, -room, 0)
+        draw_text(painter, shown, time + dot + name, bold, palette.colour("ink"))
         for text in rest:
             line.translate(0, 21)
             draw_text(painter, line, text, plain, palette.colour("soft_ink"))

@@ -24,8 +24,8 @@ from core.recordings.subject_words import OLDEST_YEARS, known_word, sex_of_word
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 FORMAT_NAME = "HL7 aECG"
-# Ten minutes of twelve leads at 500 Hz, five characters a sample, and its annotations.
-LARGEST_BYTES = 64_000_000
+# Eight leads of 33 minutes at 500 Hz; a file of this size needs under 500 MB and two seconds.
+LARGEST_BYTES = 40_000_000
 _ROOT = re.compile(r"<(?:[\w.-]+:)?AnnotatedECG[\s>/]")
 _LEAD = "MDC_ECG_LEAD_"
 _SECONDS = {"s": 1.0, "ms": 1e-3, "us": 1e-6}

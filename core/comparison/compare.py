@@ -35,7 +35,7 @@ from core.comparison.results import (
     Placement,
     ShiftRange,
 )
-from core.errors import Stopped
+from core.errors import NoTracing, Stopped
 from core.json_numbers import number_or_none
 from core.measures.lead_values import COMPARED
 from core.measures.repeat_noise import repeat_noise
@@ -85,6 +85,8 @@ def compare(
     ------
     NotEnoughBeats
         If either recording has fewer than three usable beats of one kind.
+    NoTracing
+        If no lead can be used in both.
     NotComparable
         If a stop stands between the two that the settings don't lift.
     Stopped
@@ -112,6 +114,11 @@ def compare(
 
     step(0.5, "weighing the torso ensemble")
     usable = usable_independent(first.quality) & usable_independent(second.quality)
+    if not usable.any():
+        raise NoTracing(
+            f"{earlier.source.name} and {later.source.name}: no lead holds a usable tracing in "
+            "both. Record again with all electrodes well attached."
+        )
     ensemble = load_ensemble()
     person = weigh_ensemble(
         ensemble, [ventricular_beat_mv(first), ventricular_beat_mv(second)], usable

@@ -24,7 +24,7 @@ from core.measures.lead_values import (
 from core.measures.vectors import angle_between_deg, frontal_axis_deg, kors_vector
 from core.notices import Notice
 from core.quality.faults import Fault, find_faults
-from core.quality.lead_quality import LeadQuality, grade_leads
+from core.quality.lead_quality import SAMPLES_MISSING, LeadQuality, grade_leads
 from core.quality.limb_algebra import limb_lead_contradiction_mv
 from core.quality.right_leg import right_leg_interchange
 from core.recordings.leads import TWELVE_LEADS, independent_from_twelve, twelve_from_independent
@@ -260,7 +260,11 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     _, _, q_mv = qrs_waves(beat_mv[:, points.qrs_window()])
     quality = grade_leads(recording)
     first = fiducials.qrs_onset if fiducials.p_onset is None else fiducials.p_onset
-    flat = right_leg_interchange(beat_mv[:3, first : fiducials.t_offset + 1])
+    # A lead that was lost on its way contradicts the others; one that was recorded flat does not.
+    flat = None
+    lost = any(grade.reason == SAMPLES_MISSING for grade in quality[:3])
+    if not lost and limb_lead_contradiction_mv(recording) is None:
+        flat = right_leg_interchange(beat_mv[:3, first : fiducials.t_offset + 1])
     faults = find_faults(
         TWELVE_LEADS,
         twelve_from_independent(analysis.residual_mv),

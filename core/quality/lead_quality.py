@@ -17,6 +17,7 @@ MOST_MISSING = 0.2
 # Share of samples that lie exactly on the lead's extreme value: a tracing touches its own
 # extreme once a beat, a clipped one stays there.
 CLIPPED_SHARE = 0.02
+SAMPLES_MISSING = "samples missing"
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,16 +30,28 @@ class LeadQuality:
 
 
 def grade_leads(recording: Recording) -> tuple[LeadQuality, ...]:
-    """Grade each of the twelve leads of a recording."""
-    return tuple(
-        _grade(lead, recording.signal_mv[:, column]) for column, lead in enumerate(recording.leads)
-    )
+    """Grade each of the twelve leads of a recording.
+
+    The other four limb leads are computed from I and II throughout, so they fall with either.
+    """
+    grades = {
+        lead: _grade(lead, recording.signal_mv[:, column])
+        for column, lead in enumerate(recording.leads)
+    }
+    for source in ("I", "II"):
+        if grades[source].usable:
+            continue
+        reason = f"computed from lead {source}, which is {grades[source].reason}"
+        for lead in ("III", "aVR", "aVL", "aVF"):
+            if grades[lead].usable:
+                grades[lead] = LeadQuality(lead, usable=False, reason=reason)
+    return tuple(grades.values())
 
 
 def _grade(lead: str, samples_mv: NDArray[np.float64]) -> LeadQuality:
     missing = np.isnan(samples_mv)
     if missing.mean() > MOST_MISSING:
-        return LeadQuality(lead, usable=False, reason="samples missing")
+        return LeadQuality(lead, usable=False, reason=SAMPLES_MISSING)
     held = samples_mv[~missing]
     high, low = float(held.max()), float(held.min())
     if high - low < FLAT_MV:

@@ -14,6 +14,7 @@ from core import Settings, compare, measure
 from core.comparison.refused import refused_comparison
 from core.comparison.table import comparison_csv
 from core.errors import NotComparable, NotEnoughBeats
+from core.recordings.leads import TWELVE_LEADS
 from tests.helpers.schemas import validate
 from tests.helpers.synthetic import synthetic
 
@@ -51,6 +52,18 @@ def test_a_comparison_that_a_stop_ended_tells_all_notices(steady, raised):
     assert "identifiers-differ" in [notice["code"] for notice in content["notices"]]
 
 
+def test_a_refused_comparison_holds_no_number_that_was_not_measured(steady):
+    recording = steady.earlier.recording
+    content = refused_comparison(recording, recording, Settings(), NotEnoughBeats("Too short."))
+    json.dumps(content, allow_nan=False)
+    for lead in content["leads"].values():
+        assert {number for m in lead["measures"].values() for number in m.values()} == {None}
+    assert set(content["placement"]["electrodes"].values()) == {None}
+    assert content["placement"]["tail_probability"] is None
+    assert content["earlier"]["heart_rate_per_min"] is None
+    assert content["earlier"]["source"]["sha256"] == recording.source.sha256
+
+
 @pytest.mark.parametrize(
     "spoil",
     [
@@ -82,6 +95,15 @@ def test_beat_pairs_name_used_beats_once(raised):
     assert max(lags) - min(lags) < 8.0
 
 
+def test_a_refused_comparison_has_the_keys_of_one_that_was_made(raised):
+    recording = raised.earlier.recording
+    made = raised.to_dict()
+    refused = refused_comparison(recording, recording, Settings(), NotEnoughBeats("Too short."))
+    assert refused.keys() == made.keys()
+    for part in ("earlier", "later", "placement", "overall"):
+        assert refused[part].keys() == made[part].keys()
+
+
 def test_no_name_and_no_folder_is_told(raised):
     text = json.dumps(raised.to_dict())
     assert raised.earlier.recording.subject.name not in text
@@ -97,6 +119,17 @@ def test_the_table_says_what_the_json_says(raised):
         assert row["judgement"] == content[row["lead"]]["judgement"]
         for name, value in m.items():
             assert (float(row[name]) if row[name] else None) == value
+
+
+def test_the_tables_columns_are_those_of_the_contract(raised):
+    header, *rows = csv.reader(io.StringIO(comparison_csv(raised)))
+    numbers = ["earlier", "later", "change", "noise_low", "noise_high", "reach_low", "reach_high"]
+    numbers += ["expected", "remainder", "remainder_low", "remainder_high"]
+    assert header == ["lead", "judgement", "measure", *numbers]
+    measures = ["j_mv", "st_mv", "st_slope_mv_per_s", "t_mv", "r_mv", "s_mv", "qrs_net_mv_ms"]
+    assert [(row[0], row[2]) for row in rows] == [(x, y) for x in TWELVE_LEADS for y in measures]
+    assert "" in {field for row in rows for field in row}  # the pair has a lead without S
+    assert not {"nan", "None"} & {field for row in rows for field in row}
 
 
 def test_a_report_of_two_recordings_of_other_rates_is_valid(steady):

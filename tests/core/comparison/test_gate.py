@@ -170,6 +170,52 @@ def test_a_rate_far_off_is_a_caution(pair):
     assert "rate-differs" in codes(replace(earlier, rr_s=later.rr_s / 1.4), later)
 
 
+def test_lifting_one_stop_leaves_the_other(pair):
+    earlier, later = changed(pair, id="INVENTED-99")
+    later = with_recording(later, filters=Filters(high_pass_hz=0.67))
+    both = ("identifiers-differ", "monitoring-filter")
+    for lifted, standing in (both, both[::-1]):
+        with pytest.raises(NotComparable) as refusal:
+            pair_notices(earlier, later, Settings(lifted_stops=(lifted,)))
+        by_code = {notice.code: notice.text for notice in refusal.value.notices}
+        assert str(refusal.value) == by_code[standing]
+        assert by_code.keys() >= set(both)
+    assert set(codes(earlier, later, lifted_stops=both)) >= set(both)
+
+
+@pytest.mark.parametrize(
+    ("filtered", "words"), [((1, 0), "Earlier"), ((0, 1), "Later"), ((1, 1), "Earlier and later")]
+)
+def test_a_monitoring_filter_is_said_of_the_recording_that_has_it(pair, filtered, words):
+    earlier, later = (
+        with_recording(report, filters=Filters(high_pass_hz=0.67 if it else 0.05))
+        for report, it in zip(pair, filtered, strict=True)
+    )
+    with pytest.raises(NotComparable, match=f"^{words} recording"):
+        pair_notices(earlier, later, Settings())
+
+
+def test_a_recordings_own_notices_say_whose_they_are(raised):
+    own = [
+        (which, notice)
+        for which, report in (("Earlier", raised.earlier), ("Later", raised.later))
+        for notice in report.notices
+    ]
+    assert own
+    told = [notice.text for notice in raised.notices]
+    for which, notice in own:
+        assert f"{which} recording: {notice.text}" in told
+
+
+def test_a_small_high_pass_difference_is_not_told(pair):
+    earlier, later = (
+        with_recording(report, filters=Filters(high_pass_hz=hz))
+        for report, hz in zip(pair, (0.05, 0.051), strict=True)
+    )
+    # A thousandth of a Hz moves J by 5.5 nV for each mV ms of QRS area: under 1 uV.
+    assert "high-pass-differs" not in codes(earlier, later)
+
+
 def test_notices_come_gravest_first(pair):
     earlier, later = changed(pair, sex="male", id="X")
     found = pair_notices(earlier, later, Settings(lifted_stops=("identifiers-differ",)))

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import pytest
+from hypothesis import given
+from hypothesis import strategies as hypothesis
 
 from core.comparison.judge import BY_WEIGHT, judge_lead, judge_pair
 from core.comparison.results import NOTHING, MeasureChange
@@ -78,6 +80,61 @@ def test_other_measures_do_not_decide():
     assert judge_lead(measures, qrs_points_to_shift=False) == "steady"
 
 
+def mirrored(m: MeasureChange) -> MeasureChange:
+    """The same change with its sign turned."""
+    return MeasureChange(
+        *(-value for value in (m.earlier, m.later, m.change)),
+        *(-value for value in (m.noise_high, m.noise_low, m.reach_high, m.reach_low)),
+        *(-value for value in (m.expected, m.remainder, m.remainder_high, m.remainder_low)),
+    )
+
+
+sizes = hypothesis.floats(-0.4, 0.4)
+ranges = hypothesis.tuples(sizes, sizes).map(lambda ends: tuple(sorted(ends)))
+changes = hypothesis.builds(
+    lambda size, remainder, ends: change(size, remainder=remainder, remainder_range=ends),
+    sizes,
+    sizes,
+    ranges,
+)
+
+
+@given(changes, changes, hypothesis.booleans())
+def test_rises_and_falls_are_judged_alike(st, t, points_to_shift):
+    one, other = (
+        judge_lead(measures, qrs_points_to_shift=points_to_shift)
+        for measures in (
+            {"st_mv": st, "t_mv": t},
+            {"st_mv": mirrored(st), "t_mv": mirrored(t)},
+        )
+    )
+    assert one == other
+
+
+@given(changes, changes, hypothesis.booleans())
+def test_a_lead_is_never_judged_lighter_than_st_or_t_alone(st, t, points_to_shift):
+    together, *alone = (
+        BY_WEIGHT.index(judge_lead(measures, qrs_points_to_shift=points_to_shift))
+        for measures in (
+            {"st_mv": st, "t_mv": t},
+            {"st_mv": st, "t_mv": NOTHING},
+            {"st_mv": NOTHING, "t_mv": t},
+        )
+    )
+    assert together == min(alone)
+
+
 @pytest.mark.parametrize("position", range(len(BY_WEIGHT)))
 def test_a_pair_is_what_its_weightiest_lead_is(position):
-    assert judge_pair(BY_WEIGHT[position:]) == BY_WEIGHT[position]
+    codes = BY_WEIGHT[position:]
+    assert judge_pair(codes) == judge_pair(reversed(codes)) == BY_WEIGHT[position]
+
+
+def test_what_may_be_the_heart_weighs_most():
+    assert BY_WEIGHT == (
+        "beyond-reach",
+        "in-reach-unbacked",
+        "in-reach-backed",
+        "steady",
+        "not-judged",
+    )

@@ -32,7 +32,7 @@ def test_a_clean_recording_is_usable_in_every_lead():
         (lambda x: np.clip(x, -0.02, None), "clipped"),
     ],
 )
-@pytest.mark.parametrize("lead", ["II", "V2"])
+@pytest.mark.parametrize("lead", ["aVF", "V2"])
 def test_a_spoiled_lead_and_no_other_is_unusable_and_says_why(lead, spoil, reason):
     grades = {grade.lead: grade for grade in grade_leads(spoiled(lead, spoil))}
     assert (grades[lead].usable, grades[lead].reason) == (False, reason)
@@ -43,3 +43,12 @@ def test_coarse_steps_are_not_clipping():
     """At 20 uV a step a lead rests on its extreme for several samples of each beat."""
     coarse = spoiled("V2", lambda x: np.rint(x / 0.02) * 0.02)
     assert all(grade.usable for grade in grade_leads(coarse))
+
+
+@pytest.mark.parametrize("lead", ["I", "II"])
+def test_leads_computed_from_a_lost_one_fall_with_it(lead):
+    grades = {g.lead: g for g in grade_leads(spoiled(lead, np.zeros_like))}
+    for computed in ("III", "aVR", "aVL", "aVF"):
+        assert grades[computed].reason == f"computed from lead {lead}, which is flat"
+    assert grades["II" if lead == "I" else "I"].usable
+    assert all(grades[f"V{k}"].usable for k in range(1, 7))

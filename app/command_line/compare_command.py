@@ -7,7 +7,7 @@ import sys
 from typing import Any
 
 from app.command_line.failures import CommandFailed
-from app.command_line.outputs import refuse_two_to_standard_output, write_output
+from app.command_line.outputs import harmless, refuse_two_to_standard_output, write_output
 from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import comparison_summary
 from core import Comparison, Settings, Spread, compare
@@ -66,7 +66,7 @@ def run(options: argparse.Namespace) -> None:
     if options.pdf:
         write_output(options.pdf, report_pdf(comparison))
     if not (options.json or options.csv or options.pdf):
-        sys.stdout.write(comparison_summary(comparison))
+        sys.stdout.write(harmless(comparison_summary(comparison)))
 
 
 def report_pdf(comparison: Comparison) -> bytes:

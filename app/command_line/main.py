@@ -6,6 +6,7 @@ Exit status: 0 done; 1 read but not comparable; 2 wrong arguments or an unreadab
 from __future__ import annotations
 
 import argparse
+import io
 import sys
 from collections.abc import Sequence
 
@@ -17,6 +18,7 @@ from app.command_line import (
     open_command,
 )
 from app.command_line.failures import CommandFailed
+from app.command_line.outputs import PLAINER_SIGNS, harmless
 from core.errors import ComparisonError, ModelError, RecordingError
 from core.version import program_version
 from core.wording.caution import CAUTION
@@ -44,6 +46,10 @@ def build_parser() -> argparse.ArgumentParser:
 
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command and answer its exit status."""
+    for stream in (sys.stdout, sys.stderr):
+        # A terminal that lacks a character shows another in its place; it does not end the work.
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors=PLAINER_SIGNS)
     parser = build_parser()
     options = parser.parse_args(arguments)
     try:
@@ -67,6 +73,6 @@ def run() -> None:
 
 
 def _fail(status: int, reason: object) -> int:
-    line = " ".join(str(reason).split())
+    line = harmless(" ".join(str(reason).split()))
     sys.stderr.write(f"samespot: {line}\n")
     return status

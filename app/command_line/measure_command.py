@@ -6,7 +6,7 @@ import argparse
 import sys
 from typing import Any
 
-from app.command_line.outputs import write_output
+from app.command_line.outputs import harmless, write_output
 from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
 from app.command_line.summaries import recording_summary
 from core import measure
@@ -28,4 +28,4 @@ def run(options: argparse.Namespace) -> None:
     if options.json:
         write_output(options.json, as_json(report.to_dict()))
     else:
-        sys.stdout.write(recording_summary(report))
+        sys.stdout.write(harmless(recording_summary(report)))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import codecs
 import sys
 from pathlib import Path
 
@@ -9,6 +10,30 @@ from app.command_line.failures import CommandFailed
 from core.files import write_atomically
 
 STANDARD_OUTPUT = "-"
+
+
+PLAINER_SIGNS = "samespot.plainer"
+_PLAINER = str.maketrans(
+    {"−": "-", "–": "-", "·": "-", "●": "o", "◆": "#", "◇": "*", "▲": "^", "±": "+-", "µ": "u"}
+    | {"…": "...", "×": "x", "\N{NO-BREAK SPACE}": " "}
+)
+
+
+def _plainer(error: UnicodeError) -> tuple[str, int]:
+    """What stands for signs that a terminal lacks."""
+    if not isinstance(error, UnicodeEncodeError):
+        raise error
+    lacking = error.object[error.start : error.end].translate(_PLAINER)
+    return lacking.encode("ascii", "replace").decode(), error.end
+
+
+codecs.register_error(PLAINER_SIGNS, _plainer)
+
+
+def harmless(text: str) -> str:
+    """A text without the signs that a terminal obeys rather than shows."""
+    allowed = "\n\N{NO-BREAK SPACE}"
+    return "".join(sign if sign.isprintable() or sign in allowed else "?" for sign in text)
 
 
 def write_output(target: str, content: bytes) -> None:
@@ -24,6 +49,8 @@ def write_output(target: str, content: bytes) -> None:
         sys.stdout.buffer.write(content)
         sys.stdout.buffer.flush()
         return
+    if not Path(target).name:
+        raise CommandFailed(f"{target}: this is a folder. Name a file to write.")
     try:
         write_atomically(Path(target), content)
     except OSError as error:

@@ -20,6 +20,11 @@ class Source:
     format: str
     sha256: str
 
+    def __post_init__(self) -> None:
+        # A file's name may hold bytes that are no text; they cannot be written anywhere.
+        readable = self.name.encode("utf-8", "replace").decode()
+        object.__setattr__(self, "name", readable)
+
     def to_dict(self) -> dict[str, str]:
         """The source as JSON writes it."""
         return {"name": self.name, "format": self.format, "sha256": self.sha256}

@@ -81,8 +81,33 @@ def slow(folder: Path) -> Path:
     return write_record(folder, "slow", counts(10), list(TWELVE_LEADS), rate_hz=50.0)
 
 
+def unknown_ending(folder: Path) -> Path:
+    path = folder / "tracing.xyz"
+    path.write_text("This is no recording.\n")
+    return path
+
+
+def garbage(folder: Path) -> Path:
+    path = folder / "noise.dat"
+    path.write_bytes(np.random.default_rng(2).bytes(3000))
+    return path
+
+
+def a_chest_lead_short(folder: Path) -> Path:
+    return write_record(folder, "eleven", counts(10)[:, :11], list(TWELVE_LEADS[:11]))
+
+
+def leads_without_names(folder: Path) -> Path:
+    return write_record(folder, "nameless", counts(10), [f"channel {n}" for n in range(12)])
+
+
 def one_second(folder: Path) -> Path:
     return write_record(folder, "second", counts(1), list(TWELVE_LEADS))
+
+
+def nothing_recorded(folder: Path) -> Path:
+    missing_samples = np.full((5000, 12), -(1 << 15))  # WFDB's mark for a sample that isn't there
+    return write_record(folder, "nothing", missing_samples, list(TWELVE_LEADS))
 
 
 def flat(folder: Path) -> Path:
@@ -101,8 +126,12 @@ UNREADABLE = [
     damaged_dicom,
     wrong_unit,
     slow,
+    unknown_ending,
+    garbage,
+    a_chest_lead_short,
+    leads_without_names,
 ]
-NOT_COMPARABLE = [one_second, flat]
+NOT_COMPARABLE = [one_second, nothing_recorded, flat]
 
 
 def run(arguments, capsys) -> tuple[int, str]:
@@ -134,6 +163,8 @@ def test_a_file_that_cannot_be_read(make, tmp_path, capsys):
         status, line = run(arguments, capsys)
         assert status == 2
         assert path.stem in line
+        # A name that was typed is repeated as it was typed; no other folder is told.
+        assert make is missing or str(tmp_path) not in line
         assert line.endswith(".")
         assert line.count(". ") >= 1  # what is wrong, then what to do
 
@@ -159,17 +190,37 @@ def test_the_json_that_was_asked_for_says_why(make, tmp_path, capsys):
     assert stops[0] in line
 
 
-def test_a_file_that_may_not_be_read(tmp_path, capsys, monkeypatch):
+@pytest.mark.parametrize("make", [cut_short, empty], ids=lambda make: make.__name__)
+def test_no_json_is_written_of_what_could_not_be_read(make, tmp_path, capsys):
+    target = tmp_path / "out.json"
+    assert run(["compare", GOOD, str(make(tmp_path)), "--json", str(target)], capsys)[0] == 2
+    assert not target.exists()
+
+
+@pytest.fixture
+def locked(tmp_path, monkeypatch) -> Path:
+    """A file that may not be read, not even by a root user."""
     path = tmp_path / "locked.dcm"
     shutil.copy(samples_folder() / "medial-earlier.dcm", path)
+    path.chmod(0)
+    opened = Path.open
 
-    def refuse(*_: object, **__: object) -> None:
-        raise PermissionError(13, "Permission denied")
+    def refuse(self: Path, *arguments: object, **options: object) -> object:
+        if self == path:
+            raise PermissionError(13, "Permission denied")
+        return opened(self, *arguments, **options)
 
-    monkeypatch.setattr(Path, "open", refuse)  # a root user may read every file
-    status, line = run(["measure", str(path)], capsys)
-    assert status == 2
-    assert "you may read it" in line
+    monkeypatch.setattr(Path, "open", refuse)
+    return path
+
+
+def test_a_file_that_may_not_be_read(locked, tmp_path, capsys):
+    for arguments in commands(locked, tmp_path):
+        status, line = run(arguments, capsys)
+        assert status == 2
+        assert "locked.dcm" in line
+        assert "you may read it" in line
+        assert str(tmp_path) not in line
 
 
 def test_a_header_that_names_a_file_elsewhere_is_refused(tmp_path, capsys):

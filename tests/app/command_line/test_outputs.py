@@ -7,11 +7,9 @@ import json
 import subprocess
 import sys
 
-import numpy as np
 import pytest
 
 from app.command_line.main import main
-from core import read_recording
 from core.recordings.leads import TWELVE_LEADS
 from core.shipped_files import samples_folder
 from core.wording.caution import CAUTIONS, PLACEMENT_CAVEAT
@@ -44,7 +42,10 @@ def test_compare_writes_json_csv_and_pdf(tmp_path, capsys):
 
 
 def test_a_cold_start_writes_json_alone_to_standard_output():
-    program = "import sys; from app.command_line.main import main; sys.exit(main())"
+    program = (
+        "import sys; from app.command_line.main import main; status = main(); "
+        "sys.exit(3 if 'PySide6' in sys.modules else status)"  # no report, so no Qt
+    )
     done = subprocess.run(
         [sys.executable, "-W", "ignore", "-c", program, "compare", *PAIR, "--json", "-"],
         capture_output=True,
@@ -54,23 +55,10 @@ def test_a_cold_start_writes_json_alone_to_standard_output():
     validate("comparison", json.loads(done.stdout))
 
 
-def test_only_one_output_can_go_to_standard_output(capsys):
-    assert main(["compare", *PAIR, "--json", "-", "--csv", "-"]) == 2
-    captured = capsys.readouterr()
-    assert captured.out == ""
-    assert len(captured.err.splitlines()) == 1
-
-
 def test_a_wider_spread_is_taken_and_told(capfdbinary):
     assert main(["compare", *PAIR, "--spread-mm", "30", "--json", "-"]) == 0
     content = json.loads(capfdbinary.readouterr().out)
     assert content["settings"]["spread_mm"] == {"left": 30.0, "up": 30.0}
-
-
-@pytest.mark.parametrize("bad", ["-1", "nan", "101"])
-def test_an_impossible_spread_is_refused(bad, capsys):
-    assert main(["compare", *PAIR, f"--spread-mm={bad}"]) == 2
-    assert "--spread-mm" in capsys.readouterr().err
 
 
 def test_measure_prints_or_writes_the_report(tmp_path, capsys):
@@ -79,26 +67,6 @@ def test_measure_prints_or_writes_the_report(tmp_path, capsys):
     target = tmp_path / "report.json"
     assert main(["measure", PAIR[0], "--json", str(target)]) == 0
     validate("recording", json.loads(target.read_text()))
-
-
-def test_move_writes_a_record_with_that_lead_alone_changed(tmp_path, capsys):
-    stem = tmp_path / "moved"
-    arguments = ["--electrode", "V2", "--up-mm", "24", "--electrode", "V5", "--left-mm", "-30"]
-    assert main(["move", PAIR[0], *arguments, "--out", str(stem)]) == 0
-    assert capsys.readouterr().out == ""
-    before, after = read_recording(PAIR[0]), read_recording(stem)
-    assert after.sampling_rate_hz == before.sampling_rate_hz
-    assert after.n_samples == before.n_samples
-    for column, lead in enumerate(TWELVE_LEADS):
-        same = np.array_equal(after.signal_mv[:, column], before.signal_mv[:, column])
-        assert same == (lead not in ("V2", "V5")), lead
-
-
-def test_a_move_of_an_electrode_must_be_named_first(tmp_path, capsys):
-    with pytest.raises(SystemExit) as ended:
-        main(["move", PAIR[0], "--up-mm", "24", "--electrode", "V2", "--out", str(tmp_path / "m")])
-    assert ended.value.code == 2
-    assert "must follow an --electrode" in capsys.readouterr().err
 
 
 @pytest.mark.parametrize(
@@ -142,20 +110,6 @@ def test_open_without_a_display_says_what_to_do(monkeypatch, capsys):
         assert "samespot compare" in capsys.readouterr().err
 
 
-def test_open_takes_two_recordings_or_none(capsys):
-    assert main(["open", PAIR[0]]) == 2
-    assert "two recordings or none" in capsys.readouterr().err
-
-
-@pytest.mark.parametrize("option", ["--json", "--csv", "--pdf"])
-def test_a_file_that_cannot_be_written_is_one_line(tmp_path, capsys, option):
-    target = tmp_path / "no such folder" / "out"
-    assert main(["compare", *PAIR, option, str(target)]) == 2
-    error = capsys.readouterr().err
-    assert len(error.splitlines()) == 1
-    assert "out" in error
-
-
 def test_help_and_version(capsys):
     for arguments, part in ((["--help"], CAUTIONS[0].split()[0]), (["--version"], "samespot ")):
         with pytest.raises(SystemExit) as ended:
@@ -174,12 +128,3 @@ def test_a_stop_is_told_with_what_lifts_it(capsys, tmp_path):
     validate("comparison", json.loads(target.read_text()))
     assert main(["compare", PAIR[0], other, "--lift-stop", "identifiers-differ"]) == 0
     assert "lifted by the user" in capsys.readouterr().out
-
-
-def test_no_identifier_and_no_path_is_logged(caplog, tmp_path):
-    # Below INFO a file-system library names what it opens; nothing of the program shows that.
-    caplog.set_level("INFO")
-    assert main(["compare", *PAIR, "--pdf", str(tmp_path / "out.pdf")]) == 0
-    logged = caplog.text
-    assert "INVENTED" not in logged
-    assert str(samples_folder()) not in logged

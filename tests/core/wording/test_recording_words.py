@@ -1,6 +1,6 @@
 from __future__ import annotations
 
-from datetime import date, datetime, timedelta
+from datetime import datetime
 
 import pytest
 
@@ -14,10 +14,9 @@ def test_a_date_leaves_no_order_of_day_and_month_to_guess():
 
 
 def test_every_month_has_a_name_of_its_own():
-    days = [date(2031, 1, 15) + timedelta(days=30.4 * n) for n in range(12)]
-    names = [when(datetime(d.year, d.month, d.day)).split()[1] for d in days]
+    names = [when(datetime(2031, month, 15)).split()[1] for month in range(1, 13)]
+    assert (names[0], names[-1]) == ("January", "December")
     assert len(set(names)) == 12
-    assert names == [f"{d:%B}" for d in days]
 
 
 def test_what_the_file_does_not_say_is_said_to_be_missing():

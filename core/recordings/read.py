@@ -7,7 +7,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 from core.errors import RecordingError
-from core.recordings.aecg_reader import looks_like_aecg, read_aecg
+from core.recordings.aecg.reader import looks_like_aecg, read_aecg
 from core.recordings.csv_reader import looks_like_csv, read_csv
 from core.recordings.dicom_reader import looks_like_dicom, read_dicom
 from core.recordings.edf_reader import looks_like_edf, read_edf

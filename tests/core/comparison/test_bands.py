@@ -69,7 +69,7 @@ def test_the_expected_change_measured_on_the_drawn_beat_is_the_expected_st(compa
 
 @pytest.mark.xfail(
     strict=True,
-    reason="the band is drawn at each instant, T is judged at its own peak, wherever that falls",
+    reason="the drawn reach leaves out what the model does not know, which the judged one holds",
 )
 def test_the_drawn_reach_is_no_narrower_than_the_one_that_judges(comparison):
     """Otherwise a change that is judged in reach is seen outside it."""

@@ -108,6 +108,19 @@ def test_an_age_a_year_on_fits_its_date(pair):
     assert "age-against-dates" not in codes(earlier, later)
 
 
+@pytest.mark.parametrize(("older_by", "told"), [(5, False), (0, True), (10, True)])
+def test_ages_must_follow_the_dates_over_years(pair, older_by, told):
+    earlier, later = pair
+    at = earlier.recording.recorded_at.replace(year=2026)
+    first = with_recording(earlier, recorded_at=at)
+    second = with_recording(
+        later,
+        recorded_at=at.replace(year=2031),
+        subject=subject(later.recording, age_years=earlier.recording.subject.age_years + older_by),
+    )
+    assert ("age-against-dates" in codes(first, second)) == told
+
+
 @pytest.mark.parametrize(
     ("high_pass", "code"),
     [

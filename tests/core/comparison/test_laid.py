@@ -5,7 +5,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from core.comparison.laid import lay_beats
+from core.comparison.laid import BESIDE_QRS_S, lay_beats
 from core.measures.report import measure
 from core.recordings.leads import CHEST_LEADS, LIMB_LEADS, TWELVE_LEADS
 from tests.helpers.synthetic import synthetic
@@ -70,4 +70,7 @@ def test_the_qrs_slice_holds_the_qrs_of_both(request, pair):
     assert held[-1] >= earlier.time_ms[f.qrs_offset]
     assert held[0] <= later.time_ms[g.qrs_onset] - laid.lag_ms
     assert held[-1] >= later.time_ms[g.qrs_offset] - laid.lag_ms
+    # Little besides: ST must not tell where the electrodes are.
+    longer = max(earlier.time_ms[f.qrs_offset], later.time_ms[g.qrs_offset] - laid.lag_ms)
+    assert held[-1] - longer <= 1000.0 * BESIDE_QRS_S + earlier.step_ms
     assert not np.isnan(laid.later_mv[:, laid.waves]).any()

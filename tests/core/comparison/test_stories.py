@@ -2,7 +2,12 @@
 
 from __future__ import annotations
 
+import re
+
 import pytest
+
+from core.wording.judgements import SHORT_NAMES
+from core.wording.lists import named
 
 TWO_SPACES_MM = 58.0
 
@@ -58,3 +63,20 @@ def test_v5_and_v6_not_lateral_enough(medial):
 )
 def test_what_placement_explains_is_not_rare_and_what_it_does_not_is(request, pair, most, least):
     assert least <= request.getfixturevalue(pair).placement.tail_probability <= most
+
+
+@pytest.mark.parametrize("pair", ["raised", "inferior", "medial"])
+def test_the_sentence_names_of_st_and_t_what_changed_more_beyond_its_noise(request, pair):
+    comparison = request.getfixturevalue(pair)
+    groups: dict[tuple[str, str, bool], list[str]] = {}
+    for lead, result in comparison.leads.items():
+        if result.judgement != "steady":
+            m = {name: result.measures[name] for name in ("st_mv", "t_mv")}
+            most = max(m, key=lambda name: abs(m[name].change) / m[name].noise_high)
+            key = (result.judgement, SHORT_NAMES[most], m[most].change > 0)
+            groups.setdefault(key, []).append(lead)
+    assert groups
+    for (_, name, rises), members in groups.items():
+        sign = "+" if rises else "\N{MINUS SIGN}"
+        amount = rf"{name} (up to |down to )?{re.escape(sign)}\d\.\d\d.mV"
+        assert re.search(f"{amount} in {named(members)}[:;]", comparison.overall.sentence)

@@ -50,9 +50,10 @@ def test_the_demo_opens_the_sample_pair_where_a_display_answers(opened, monkeypa
 
 def test_the_demo_opens_no_window_where_files_were_asked_for(opened, monkeypatch, tmp_path):
     monkeypatch.setattr(demo_command, "display_answers", lambda: True)
-    assert main(["demo", "--out", str(tmp_path)]) == 0
+    folder = tmp_path / "made" / "for it"
+    assert main(["demo", "--out", str(folder)]) == 0
     assert opened == []
-    names = {path.name for path in tmp_path.iterdir()}
+    names = {path.name for path in folder.iterdir()}
     assert names == {"comparison.json", "comparison.pdf"}
 
 

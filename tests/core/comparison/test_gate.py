@@ -108,6 +108,11 @@ def test_an_age_a_year_on_fits_its_date(pair):
     assert "age-against-dates" not in codes(earlier, later)
 
 
+def test_an_age_that_one_file_does_not_state_is_held_against_no_date(pair):
+    for lacking in (changed(pair, age_years=None), changed(pair[::-1], age_years=None)[::-1]):
+        assert "age-against-dates" not in codes(*lacking)
+
+
 @pytest.mark.parametrize(("older_by", "told"), [(5, False), (0, True), (10, True)])
 def test_ages_must_follow_the_dates_over_years(pair, older_by, told):
     earlier, later = pair
@@ -164,6 +169,20 @@ def test_low_pass_filters(pair, low_pass, told):
         for report, hz in zip(pair, low_pass, strict=True)
     )
     assert ("low-pass-differs" in codes(earlier, later)) == told
+
+
+def test_a_filter_notice_names_both_filters_in_their_order(pair):
+    for kind, code, hz in (
+        ("low_pass_hz", "low-pass-differs", (40, 150)),
+        ("high_pass_hz", "high-pass-differs", (0.05, 0.25)),
+    ):
+        for first, second in (hz, hz[::-1]):
+            earlier, later = (
+                with_recording(report, filters=Filters(**{kind: cutoff}))
+                for report, cutoff in zip(pair, (first, second), strict=True)
+            )
+            found = {n.code: n.text for n in pair_notices(earlier, later, Settings())}
+            assert f"{first} Hz against {second} Hz" in found[code]
 
 
 def test_other_stated_placements_are_a_caution(pair):

@@ -73,4 +73,13 @@ def test_the_qrs_slice_holds_the_qrs_of_both(request, pair):
     # Little besides: ST must not tell where the electrodes are.
     longer = max(earlier.time_ms[f.qrs_offset], later.time_ms[g.qrs_offset] - laid.lag_ms)
     assert held[-1] - longer <= 1000.0 * BESIDE_QRS_S + earlier.step_ms
-    assert not np.isnan(laid.later_mv[:, laid.waves]).any()
+
+
+@pytest.mark.parametrize("pair", ["raised", "inferior", "steady", "medial"])
+def test_the_waves_slice_runs_from_p_to_the_end_of_t_as_far_as_both_beats_go(request, pair):
+    comparison = request.getfixturevalue(pair)
+    laid, f = comparison.laid, comparison.earlier.points.fiducials
+    known = ~np.isnan(laid.later_mv).any(axis=0)
+    assert known[laid.waves].all()
+    whole = np.arange(f.p_onset, f.t_offset + 1)
+    assert set(range(*laid.waves.indices(known.size))) == set(whole[known[whole]])

@@ -6,8 +6,10 @@ import re
 
 import pytest
 
+from core.recordings.leads import LIMB_LEADS
 from core.wording.judgements import SHORT_NAMES
 from core.wording.lists import named
+from core.wording.numbers import millivolts, signed_range
 
 TWO_SPACES_MM = 58.0
 
@@ -80,3 +82,21 @@ def test_the_sentence_names_of_st_and_t_what_changed_more_beyond_its_noise(reque
         sign = "+" if rises else "\N{MINUS SIGN}"
         amount = rf"{name} (up to |down to )?{re.escape(sign)}\d\.\d\d.mV"
         assert re.search(f"{amount} in {named(members)}[:;]", comparison.overall.sentence)
+
+
+@pytest.mark.parametrize("pair", ["raised", "inferior", "steady", "medial"])
+def test_every_reason_tells_the_change_that_decided_and_what_it_was_held_against(request, pair):
+    for lead, result in request.getfixturevalue(pair).leads.items():
+        told = [
+            result.measures[name]
+            for name, short in SHORT_NAMES.items()
+            if re.search(
+                rf"\b{short} {re.escape(millivolts(result.measures[name].change))}", result.reason
+            )
+        ]
+        assert told, result.reason
+        for m in told:
+            if result.judgement == "steady" or lead in LIMB_LEADS:
+                assert f"±{m.noise_high:.2f}" in result.reason
+            else:
+                assert f"({signed_range(m.reach_low, m.reach_high)} mV)" in result.reason

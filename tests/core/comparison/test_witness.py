@@ -42,3 +42,17 @@ def test_new_st_elevation_is_no_interchange():
     injured = later + 0.3 * np.sign(beat_mv(TIME_MS)[:, 60:61]) * ((TIME_MS > 90) & (TIME_MS < 300))
     assert limb_interchange_between(earlier, injured) is None
     assert chest_interchange_between(earlier, injured) is None
+
+
+@pytest.mark.parametrize("seed", range(3))
+@pytest.mark.parametrize(("others_changed_by", "named"), [(0.0, True), (0.6, False)])
+def test_leads_half_like_an_interchange_are_one_only_where_the_others_stayed(
+    seed, others_changed_by, named
+):
+    """Displaced electrodes make leads alike too, but seldom two of them alone."""
+    one = next(one for one in chest_interchanges() if one.electrodes == ("V5", "V6"))
+    earlier, later = beats(seed)
+    half_way = 0.4 * later + 0.6 * one.matrix @ later
+    half_way[2:6] *= 1.0 + others_changed_by
+    found = chest_interchange_between(earlier, half_way)
+    assert (found is not None and found.electrodes == one.electrodes) == named

@@ -6,7 +6,7 @@ from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass
 
 from core.wording.lists import joined, named
-from core.wording.numbers import millivolts, plain, signed_range
+from core.wording.numbers import digits_apart, millivolts, plain, signed_range
 
 WORDS = {
     "steady": "steady",
@@ -84,15 +84,17 @@ def reason_steady(measures: Sequence[Deciding]) -> str:
 
 
 def reason_beyond(m: Deciding, *, limb: bool) -> str:
-    """Why a lead is beyond reach."""
+    """Why a lead is beyond reach; what is beyond a limit is never shown as equal to it."""
     if limb:
+        digits = digits_apart(abs(m.change), m.noise)
         return (
-            f"{m.name} {millivolts(m.change)}: chest electrode shifts cannot change a limb lead, "
-            f"and repeat noise is ±{m.noise:.2f} mV."
+            f"{m.name} {millivolts(m.change, digits)}: chest electrode shifts cannot change a limb "
+            f"lead, and repeat noise is ±{m.noise:.{digits}f} mV."
         )
+    digits = digits_apart(m.change, m.reach_low, m.reach_high)
     return (
-        f"{m.name} {millivolts(m.change)}: beyond what electrode shifts can make here "
-        f"({signed_range(m.reach_low, m.reach_high)} mV)."
+        f"{m.name} {millivolts(m.change, digits)}: beyond what electrode shifts can make here "
+        f"({signed_range(m.reach_low, m.reach_high, digits)} mV)."
     )
 
 

@@ -33,6 +33,14 @@ def signed_range(low: float | None, high: float | None, digits: int = 2) -> str:
     return f"{signed(low, digits)} to {signed(high, digits)}"
 
 
-def millivolts(value: float | None) -> str:
+def millivolts(value: float | None, digits: int = 2) -> str:
     """``"+0.12 mV"``."""
-    return f"{signed(value)}{NARROW}mV"
+    return f"{signed(value, digits)}{NARROW}mV"
+
+
+def digits_apart(value: float, *limits: float | None) -> int:
+    """Two digits, or as many more as keep a value from looking like one of its limits."""
+    known = [limit for limit in limits if limit is not None and limit != value]
+    return next(
+        (n for n in range(2, 6) if all(round(value, n) != round(limit, n) for limit in known)), 6
+    )

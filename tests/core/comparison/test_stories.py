@@ -87,16 +87,16 @@ def test_the_sentence_names_of_st_and_t_what_changed_more_beyond_its_noise(reque
 @pytest.mark.parametrize("pair", ["raised", "inferior", "steady", "medial"])
 def test_every_reason_tells_the_change_that_decided_and_what_it_was_held_against(request, pair):
     for lead, result in request.getfixturevalue(pair).leads.items():
+        # Two digits, or as many more as keep the change from looking like its limit.
         told = [
-            result.measures[name]
+            (result.measures[name], digits)
             for name, short in SHORT_NAMES.items()
-            if re.search(
-                rf"\b{short} {re.escape(millivolts(result.measures[name].change))}", result.reason
-            )
+            for digits in range(2, 6)
+            if f"{short} {millivolts(result.measures[name].change, digits)}" in result.reason
         ]
         assert told, result.reason
-        for m in told:
+        for m, digits in told:
             if result.judgement == "steady" or lead in LIMB_LEADS:
-                assert f"±{m.noise_high:.2f}" in result.reason
+                assert f"±{m.noise_high:.{digits}f}" in result.reason
             else:
-                assert f"({signed_range(m.reach_low, m.reach_high)} mV)" in result.reason
+                assert f"({signed_range(m.reach_low, m.reach_high, digits)} mV)" in result.reason

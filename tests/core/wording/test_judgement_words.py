@@ -186,3 +186,19 @@ def test_the_next_step_follows_the_weightiest_judgement(leads, parts):
 @pytest.mark.parametrize("code", ["beyond-reach", "in-reach-unbacked"])
 def test_where_the_heart_may_have_changed_care_is_not_delayed(code):
     assert "without delaying care" in next_step({code: ["V3"]})
+
+
+def shown(text: str) -> list[float]:
+    """The numbers of a sentence that have decimals, as a reader takes them."""
+    return [float(word.replace(MINUS, "-")) for word in re.findall(rf"[+{MINUS}]?\d\.\d+", text)]
+
+
+# Six digits at most are shown: a millionth of a mV apart is apart.
+@given(st.floats(0.02, 0.5), st.floats(1e-5, 0.5), st.booleans())
+def test_what_is_beyond_a_range_is_not_shown_inside_it(high, over, rises):
+    change = high + over if rises else -high - over
+    m = replace(RISE, change=change, noise=high, reach_low=-high, reach_high=high)
+    said, low, most = shown(reason_beyond(m, limb=False))
+    assert not low <= said <= most
+    said, noise = shown(reason_beyond(m, limb=True))
+    assert abs(said) > noise

@@ -92,7 +92,10 @@ def test_every_reason_tells_the_change_that_decided_and_what_it_was_held_against
             (result.measures[name], digits)
             for name, short in SHORT_NAMES.items()
             for digits in range(2, 6)
-            if f"{short} {millivolts(result.measures[name].change, digits)}" in result.reason
+            if re.search(
+                rf"\b{short} {re.escape(millivolts(result.measures[name].change, digits))}",
+                result.reason,
+            )
         ]
         assert told, result.reason
         for m, digits in told:

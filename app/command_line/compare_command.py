@@ -8,7 +8,7 @@ from typing import Any
 
 from app.command_line.failures import CommandFailed
 from app.command_line.outputs import harmless, refuse_two_to_standard_output, write_output
-from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
+from app.command_line.recording_arguments import RECORDING_HELP, add_pair_options, read_pair
 from app.command_line.summaries import comparison_summary
 from core import Comparison, Settings, Spread, compare
 from core.comparison.refused import refused_comparison
@@ -40,7 +40,7 @@ def add_to(commands: Any) -> None:
         help="compare in spite of the stop of this name, such as identifiers-differ; "
         "the result says so",
     )
-    add_table_options(parser)
+    add_pair_options(parser)
     parser.set_defaults(run=run)
 
 
@@ -48,7 +48,7 @@ def run(options: argparse.Namespace) -> None:
     """Compare, and write what was asked for; a readable summary if nothing was."""
     refuse_two_to_standard_output(options.json, options.pdf, options.csv)
     settings = _settings(options.spread_mm, tuple(options.lift_stop))
-    earlier, later = (read_named(path, options) for path in (options.earlier, options.later))
+    earlier, later = read_pair(options)
     try:
         comparison = compare(earlier, later, settings)
     except ComparisonError as error:

@@ -7,7 +7,7 @@ import sys
 from typing import Any
 
 from app.command_line.outputs import harmless, write_output
-from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
+from app.command_line.recording_arguments import RECORDING_HELP, add_recording_options, read_named
 from app.command_line.summaries import recording_summary
 from core import measure
 from core.json_numbers import as_json
@@ -18,7 +18,7 @@ def add_to(commands: Any) -> None:
     parser = commands.add_parser("measure", help="measure one recording")
     parser.add_argument("recording", metavar="RECORDING", help=RECORDING_HELP)
     parser.add_argument("--json", metavar="FILE", help="write the recording report as JSON")
-    add_table_options(parser)
+    add_recording_options(parser)
     parser.set_defaults(run=run)
 
 

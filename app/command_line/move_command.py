@@ -9,7 +9,7 @@ from typing import Any
 
 from app.command_line.failures import CommandFailed
 from app.command_line.outputs import say
-from app.command_line.recording_arguments import RECORDING_HELP, add_table_options, read_named
+from app.command_line.recording_arguments import RECORDING_HELP, add_recording_options, read_named
 from core import ElectrodeMove, move_electrodes
 from core.recordings.leads import CHEST_LEADS
 from core.recordings.wfdb_writer import write_wfdb
@@ -67,7 +67,7 @@ def add_to(commands: Any) -> None:
     parser.add_argument(
         "--out", metavar="STEM", required=True, help="WFDB record to write, without an ending"
     )
-    add_table_options(parser)
+    add_recording_options(parser)
     parser.set_defaults(run=run)
 
 

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Collection
 from dataclasses import dataclass
-from datetime import datetime
+from datetime import datetime, timedelta
 
 import numpy as np
 from numpy.typing import NDArray
@@ -58,10 +59,19 @@ def assemble_recording(
     recorded_at: datetime | None,
     filters: Filters | None = None,
     electrode_placement: str | None = None,
+    start_s: float = 0.0,
 ) -> Recording:
     """Check the channels and order them as the twelve leads, deriving limb leads if needed.
 
     Channels of different rates are brought to the highest.
+
+    Parameters
+    ----------
+    channels : list of Channel
+    recorded_at : datetime, optional
+        When the recording in the file begins.
+    start_s : float
+        Where in it the channels begin.
 
     Raises
     ------
@@ -72,9 +82,9 @@ def assemble_recording(
     name = source.name
     by_lead: dict[str, Channel] = {}
     for channel in channels:
-        _refuse_rate(name, channel.sampling_rate_hz or sampling_rate_hz)
+        refuse_rate(name, channel.sampling_rate_hz or sampling_rate_hz)
         by_lead.setdefault(channel.lead, channel)
-    _refuse_missing_leads(name, by_lead)
+    refuse_missing_leads(name, by_lead)
     if max(channel.samples_mv.size for channel in by_lead.values()) == 0:
         raise RecordingError(f"{name}: the file holds no samples. Export the recording again.")
     for channel in by_lead.values():
@@ -100,7 +110,7 @@ def assemble_recording(
         counts_per_mv=steps,
         source=source,
         subject=subject,
-        recorded_at=recorded_at,
+        recorded_at=None if recorded_at is None else recorded_at + timedelta(seconds=start_s),
         notices=(say.limb_leads_derived(derived),) if derived else (),
         filters=filters or Filters(),
         electrode_placement=electrode_placement,
@@ -134,7 +144,14 @@ def _frozen(columns: list[NDArray[np.float64]]) -> NDArray[np.float64]:
     return table
 
 
-def _refuse_rate(name: str, rate_hz: float) -> None:
+def refuse_rate(name: str, rate_hz: float) -> None:
+    """Refuse a sampling rate at which no ECG is recorded.
+
+    Raises
+    ------
+    RecordingError
+        If it is outside `SAMPLING_RATE_RANGE_HZ`.
+    """
     low_hz, high_hz = SAMPLING_RATE_RANGE_HZ
     if not (math.isfinite(rate_hz) and low_hz <= rate_hz <= high_hz):
         raise RecordingError(
@@ -143,11 +160,18 @@ def _refuse_rate(name: str, rate_hz: float) -> None:
         )
 
 
-def _refuse_missing_leads(name: str, by_lead: dict[str, Channel]) -> None:
-    missing_chest = [lead for lead in CHEST_LEADS if lead not in by_lead]
-    if not missing_chest and can_derive_limb_leads(by_lead):
+def refuse_missing_leads(name: str, held: Collection[str]) -> None:
+    """Refuse what is no 12-lead ECG.
+
+    Raises
+    ------
+    RecordingError
+        If a chest lead or all but one limb lead is missing.
+    """
+    missing_chest = [lead for lead in CHEST_LEADS if lead not in held]
+    if not missing_chest and can_derive_limb_leads(held):
         return
-    found = [lead for lead in TWELVE_LEADS if lead in by_lead]
+    found = [lead for lead in TWELVE_LEADS if lead in held]
     if not found:
         holds = "none of the twelve leads"
     elif len(found) == 1:

@@ -148,18 +148,26 @@ def read_layout(name: str, file: BinaryIO, file_bytes: int) -> Layout:
     )
 
 
-def record_blocks(name: str, file: BinaryIO, layout: Layout) -> Iterator[tuple[slice, bytes]]:
+def record_blocks(
+    name: str, file: BinaryIO, layout: Layout, wanted: range | None = None
+) -> Iterator[tuple[slice, bytes]]:
     """The data records, a few MB of them at a time, and which they are.
+
+    Parameters
+    ----------
+    wanted : range, optional
+        Consecutive records; all unless stated.
 
     Raises
     ------
     RecordingError
         If the file became shorter since its layout was read.
     """
+    records = range(layout.n_records) if wanted is None else wanted
     at_once = max(1, BLOCK_BYTES // layout.record_bytes)
-    file.seek(len(layout.header))
-    for first in range(0, layout.n_records, at_once):
-        n = min(at_once, layout.n_records - first)
+    file.seek(len(layout.header) + records.start * layout.record_bytes)
+    for first in records[::at_once]:
+        n = min(at_once, records.stop - first)
         data = file.read(n * layout.record_bytes)
         if len(data) < n * layout.record_bytes:
             raise damaged(name, "it became shorter while it was read")

@@ -10,7 +10,6 @@ size, so both are handed to it in blocks.
 
 from __future__ import annotations
 
-import math
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, BinaryIO
@@ -19,7 +18,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
-from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ, Channel, assemble_recording
+from core.recordings.assemble import (
+    Channel,
+    assemble_recording,
+    refuse_missing_leads,
+    refuse_rate,
+)
 from core.recordings.edf_layout import (
     Layout,
     damaged,
@@ -31,10 +35,10 @@ from core.recordings.edf_layout import (
 from core.recordings.edf_layout import looks_like_edf as looks_like_edf
 from core.recordings.edf_subject import filters_of, recorded_at_of, subject_of, text_of
 from core.recordings.fingerprint import sha256_of_files
+from core.recordings.held import Held
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.recording import Recording, Source
 from core.recordings.shown import shown
-from core.recordings.size_limit import refuse_too_long
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 if TYPE_CHECKING:
@@ -61,8 +65,8 @@ class _Lead:
     prefiltering: str
 
 
-def read_edf(path: Path) -> Recording:
-    """Read the ECG leads of an EDF, EDF+ or BDF file.
+def open_edf(path: Path) -> Held:
+    """The ECG leads of an EDF, EDF+ or BDF file.
 
     Interruptions of an EDF+D file become gaps (NaN).
 
@@ -70,8 +74,7 @@ def read_edf(path: Path) -> Recording:
     ------
     RecordingError
         If the file contradicts itself, a lead is not in volts, the recording is interrupted for
-        longer than it lasts or is too long for memory, or the leads are not those of a 12-lead
-        ECG.
+        longer than it lasts, or the leads are not those of a 12-lead ECG.
     OSError
         If the file cannot be opened.
     """
@@ -79,30 +82,44 @@ def read_edf(path: Path) -> Recording:
     try:
         with path.open("rb") as file:
             layout = read_layout(name, file, path.stat().st_size)
-            return _recording(path, file, layout)
+            return _held(path, file, layout)
     except (RecordingError, OSError, MemoryError):
         raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise damaged(name, type(error).__name__) from error
 
 
-def _recording(path: Path, file: BinaryIO, layout: Layout) -> Recording:
+def _held(path: Path, file: BinaryIO, layout: Layout) -> Held:
     name = path.name
     header = _decoded(layout, b"", 0)
     leads = _leads(name, layout, header)
     onsets_s = record_onsets_s(name, file, layout) if layout.is_interrupted else None
     first_s = first_onset_s(file, layout) if onsets_s is None else float(onsets_s[0])
-    rate_hz = max((lead.rate_hz for lead in leads), default=1.0)
+    refuse_missing_leads(name, [lead.lead for lead in leads])
+    for lead in leads:
+        refuse_rate(name, lead.rate_hz)
+    rate_hz = max(lead.rate_hz for lead in leads)
     starts_s = _starts_s(name, layout, onsets_s, rate_hz)
-    _refuse_length(name, layout, leads, starts_s)
     recorded_at = recorded_at_of(header, layout.header, onset_s=first_s)
-    return assemble_recording(
-        _channels(name, file, layout, leads, starts_s),
+    source = Source(name, layout.kind + ("+" if layout.is_plus else ""), sha256_of_files([path]))
+
+    def between(start_s: float, stop_s: float) -> Recording:
+        return assemble_recording(
+            _channels(path, layout, leads, starts_s, start_s, stop_s),
+            sampling_rate_hz=rate_hz,
+            source=source,
+            subject=subject_of(header, is_plus=layout.is_plus, recorded_at=recorded_at),
+            recorded_at=recorded_at,
+            filters=filters_of(lead.prefiltering for lead in leads),
+            start_s=start_s,
+        )
+
+    return Held(
+        name=name,
+        duration_s=float(starts_s[-1]) + layout.record_s,
+        n_leads=max(len(leads), len(TWELVE_LEADS)),
         sampling_rate_hz=rate_hz,
-        source=Source(name, layout.kind + ("+" if layout.is_plus else ""), sha256_of_files([path])),
-        subject=subject_of(header, is_plus=layout.is_plus, recorded_at=recorded_at),
-        recorded_at=recorded_at,
-        filters=filters_of(lead.prefiltering for lead in leads),
+        between=between,
     )
 
 
@@ -206,43 +223,36 @@ def _starts_s(
     return np.asarray(numbers * layout.record_s + delays_s, dtype=np.float64)
 
 
-def _refuse_length(
-    name: str, layout: Layout, leads: list[_Lead], starts_s: NDArray[np.float64]
-) -> None:
-    """Refuse what would not fit, at the rate to which all leads will be brought."""
-    if not leads:
-        return
-    # A lead of an impossible rate is refused by name, later; it must not allocate before that.
-    most_samples = layout.n_records * max(lead.samples_a_record for lead in leads)
-    rate_hz = max(lead.rate_hz for lead in leads)
-    duration_s = float(starts_s[-1]) + layout.record_s
-    at_most_hz = min(rate_hz, SAMPLING_RATE_RANGE_HZ[1])
-    refuse_too_long(
-        name,
-        n_leads=len(leads),
-        n_samples=max(most_samples, math.ceil(duration_s * at_most_hz)),
-        rate_hz=at_most_hz,
-    )
-
-
 def _channels(
-    name: str,
-    file: BinaryIO,
+    path: Path,
     layout: Layout,
     leads: list[_Lead],
     starts_s: NDArray[np.float64],
+    start_s: float,
+    stop_s: float,
 ) -> list[Channel]:
-    first_samples = [_first_samples(lead, starts_s) for lead in leads]
-    samples_mv = [
-        np.full(int(first[-1]) + lead.samples_a_record, np.nan)
-        for lead, first in zip(leads, first_samples, strict=True)
+    """The leads from one time to another."""
+    # Half a sample: a stretch that begins where a record ends does not begin within it.
+    slack_s = 0.5 / max(lead.rate_hz for lead in leads)
+    first = int(np.searchsorted(starts_s + layout.record_s - slack_s, start_s, side="right"))
+    last = int(np.searchsorted(starts_s + slack_s, stop_s, side="left"))
+    wanted = range(first, max(first, last))
+    origins = [round(start_s * lead.rate_hz) for lead in leads]
+    lengths = [
+        round(stop_s * lead.rate_hz) - origin for lead, origin in zip(leads, origins, strict=True)
     ]
-    for records, data in record_blocks(name, file, layout):
-        signals = _decoded(layout, data, records.stop - records.start).signals
-        for lead, first, values_mv in zip(leads, first_samples, samples_mv, strict=True):
-            stored = np.asarray(signals[lead.place].digital, dtype=np.float64)
-            where = first[records, np.newaxis] + np.arange(lead.samples_a_record)
-            values_mv[where.ravel()] = lead.sign * (lead.zero_mv + lead.step_mv * stored)
+    samples_mv = [np.full(length, np.nan) for length in lengths]
+    firsts = [_first_samples(lead, starts_s) for lead in leads]
+    with path.open("rb") as file:
+        for records, data in record_blocks(path.name, file, layout, wanted):
+            signals = _decoded(layout, data, records.stop - records.start).signals
+            for lead, at, origin, values_mv in zip(leads, firsts, origins, samples_mv, strict=True):
+                stored = np.asarray(signals[lead.place].digital, dtype=np.float64)
+                where = at[records, np.newaxis] + np.arange(lead.samples_a_record) - origin
+                inside = (where.ravel() >= 0) & (where.ravel() < values_mv.size)
+                values_mv[where.ravel()[inside]] = lead.sign * (
+                    lead.zero_mv + lead.step_mv * stored[inside]
+                )
     return [
         Channel(lead.lead, values_mv, 1.0 / abs(lead.step_mv), lead.rate_hz)
         for lead, values_mv in zip(leads, samples_mv, strict=True)

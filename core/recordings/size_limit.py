@@ -9,6 +9,11 @@ from core.errors import RecordingError
 MOST_VALUES = 15_000_000
 
 
+def fits_memory(*, n_leads: int, n_samples: int) -> bool:
+    """Whether so many samples can be held in memory at once."""
+    return n_leads * n_samples <= MOST_VALUES
+
+
 def refuse_too_long(name: str, *, n_leads: int, n_samples: int, rate_hz: float) -> None:
     """Refuse what would not fit, before anything is allocated for it.
 
@@ -17,7 +22,7 @@ def refuse_too_long(name: str, *, n_leads: int, n_samples: int, rate_hz: float) 
     RecordingError
         If leads times samples are more than `MOST_VALUES`.
     """
-    if n_leads * n_samples <= MOST_VALUES:
+    if fits_memory(n_leads=n_leads, n_samples=n_samples):
         return
     longest_s = MOST_VALUES / n_leads / rate_hz
     raise RecordingError(

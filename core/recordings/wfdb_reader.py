@@ -13,14 +13,19 @@ from typing import Any
 import numpy as np
 
 from core.errors import RecordingError
-from core.recordings.assemble import Channel, assemble_recording
+from core.recordings.assemble import Channel, assemble_recording, refuse_rate
 from core.recordings.fingerprint import sha256_of_files
-from core.recordings.leads import lead_of_label
+from core.recordings.held import Held, held_in_memory
+from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.recording import Recording, Source
 from core.recordings.subject_words import subject_of_comments
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 FORMAT_NAME = "WFDB"
+# Formats that wfdb stores compressed (FLAC); in all others a sample takes a byte or more.
+FLAC_FORMATS = ("508", "516", "524")
+# A frame of a FLAC stream holds at most 65 535 samples in no fewer than 10 bytes.
+MOST_SAMPLES_A_FLAC_BYTE = 6554
 
 # First line of a header: record name (with its number of segments), number of signals, ...
 _RECORD_LINE = re.compile(rb"^[^\s/]+(?:/\d+)?[ \t]+\d+(?:[ \t]|$)")
@@ -34,14 +39,13 @@ def looks_like_wfdb_header(start: bytes) -> bool:
     return False
 
 
-def read_wfdb(header_path: Path) -> Recording:
-    """Read the WFDB record whose header is *header_path*.
+def open_wfdb(header_path: Path) -> Held:
+    """The WFDB record whose header is *header_path*.
 
     Raises
     ------
     RecordingError
-        If the header cannot be read, a signal file is missing or shorter than the header says,
-        or the leads are not those of a 12-lead ECG.
+        If the header cannot be read or a signal file is missing.
     """
     # The wfdb package takes names, so the header must end in .hea.
     if header_path.suffix != ".hea":
@@ -51,31 +55,68 @@ def read_wfdb(header_path: Path) -> Recording:
     import wfdb
 
     stem = header_path.with_suffix("")
-    name = stem.name
     try:
         header: Any = wfdb.rdheader(str(stem), rd_segments=True)
+        n_signals, rate_hz = int(header.n_sig or 0), float(header.fs or 0.0)
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
             f"{header_path.name}: the WFDB header cannot be read ({_first_line(error)}). "
             "Export the recording again."
         ) from error
     signal_paths = _signal_paths(header_path, header)
+    source = Source(stem.name, FORMAT_NAME, sha256_of_files([header_path, *signal_paths]))
+
+    def read(first: int, last: int | None, start_s: float) -> Recording:
+        record = _read(header_path, first, last)
+        channels = list(_channels(stem.name, record))
+        return assemble_recording(
+            channels,
+            sampling_rate_hz=rate_hz,
+            source=source,
+            subject=subject_of_comments(record.comments or []),
+            recorded_at=header.base_datetime,
+            start_s=start_s,
+        )
+
+    if not header.sig_len:  # the files' own lengths decide
+        return held_in_memory(read(0, None, 0.0))
+    n_samples = int(header.sig_len)
+    refuse_rate(stem.name, rate_hz)
+    _refuse_claims(header_path, header)
+
+    def between(start_s: float, stop_s: float) -> Recording:
+        first = min(round(start_s * rate_hz), n_samples - 1)
+        return read(first, min(max(round(stop_s * rate_hz), first + 1), n_samples), start_s)
+
+    return Held(
+        name=stem.name,
+        duration_s=n_samples / rate_hz,
+        n_leads=max(n_signals, len(TWELVE_LEADS)),
+        sampling_rate_hz=rate_hz * _most_samples_a_frame(header),
+        between=between,
+    )
+
+
+def _read(header_path: Path, first: int, last: int | None) -> Any:
+    """The samples from one up to another, by the wfdb package."""
+    import wfdb
+
     try:
-        record: Any = wfdb.rdrecord(str(stem), physical=True)
-    except Exception as error:  # as above
+        record: Any = wfdb.rdrecord(
+            str(header_path.with_suffix("")),
+            sampfrom=first,
+            sampto=last,
+            physical=True,
+            smooth_frames=False,  # leads keep their own rates
+        )
+    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
             f"{header_path.name}: the signals cannot be read as the header describes them "
             f"({_first_line(error)}). Copy the whole record again, header and signal files."
         ) from error
-    if record.p_signal is None or record.fs is None:
+    if not record.e_p_signal:
         raise RecordingError(f"{header_path.name}: the record holds no signals. Choose another.")
-    return assemble_recording(
-        list(_channels(name, record)),
-        sampling_rate_hz=float(record.fs),
-        source=Source(name, FORMAT_NAME, sha256_of_files([header_path, *signal_paths])),
-        subject=subject_of_comments(record.comments or []),
-        recorded_at=record.base_datetime,
-    )
+    return record
 
 
 def _signal_paths(header_path: Path, header: Any) -> list[Path]:
@@ -98,10 +139,43 @@ def _signal_paths(header_path: Path, header: Any) -> list[Path]:
     return paths
 
 
+def _parts(header: Any) -> list[Any]:
+    """The record itself, or its segments; None stands for a gap."""
+    return getattr(header, "segments", None) or [header]
+
+
+def _most_samples_a_frame(header: Any) -> int:
+    return max(
+        (int(n) for part in _parts(header) if part for n in part.samps_per_frame or []), default=1
+    )
+
+
+def _refuse_claims(header_path: Path, header: Any) -> None:
+    """Refuse a header that states more samples than its signal files can hold."""
+    for part in _parts(header):
+        if part is None or not part.sig_len:
+            continue
+        for name, form in zip(part.file_name or [], part.fmt or [], strict=False):
+            held = header_path.with_name(name).stat().st_size if name != "~" else part.sig_len
+            most = held * (MOST_SAMPLES_A_FLAC_BYTE if form in FLAC_FORMATS else 1)
+            if part.sig_len > most:
+                raise RecordingError(
+                    f"{header_path.name}: the header states {part.sig_len} samples, and {name} "
+                    f"holds {held} bytes. Copy the whole record again, header and signal files."
+                )
+    in_gaps = header.sig_len - sum(part.sig_len or 0 for part in _parts(header) if part)
+    if in_gaps > header.sig_len / 2:
+        raise RecordingError(
+            f"{header_path.name}: more of the record is missing than was recorded. Export one "
+            "uninterrupted stretch of it."
+        )
+
+
 def _channels(name: str, record: Any) -> Iterable[Channel]:
     gains = record.adc_gain or [float("nan")] * record.n_sig
-    for column, (label, unit, gain) in enumerate(
-        zip(record.sig_name, record.units, gains, strict=True)
+    frames = record.samps_per_frame or [1] * record.n_sig
+    for samples, label, unit, gain, a_frame in zip(
+        record.e_p_signal, record.sig_name, record.units, gains, frames, strict=True
     ):
         found = lead_of_label(label or "")
         if found is None:
@@ -113,11 +187,12 @@ def _channels(name: str, record: Any) -> Iterable[Channel]:
                 f"{name}: lead {lead} is in the unit '{unit}', which is no voltage. "
                 "Write the record in mV."
             )
-        samples_mv = np.asarray(record.p_signal[:, column], dtype=np.float64)
+        samples_mv = np.asarray(samples, dtype=np.float64)
         if factor != 1.0 or sign != 1.0:
             samples_mv = samples_mv * (factor * sign)
         step = abs(float(gain)) / factor if gain else float("nan")
-        yield Channel(lead, samples_mv, step if np.isfinite(step) and step > 0 else 1000.0)
+        counts_per_mv = step if np.isfinite(step) and step > 0 else 1000.0
+        yield Channel(lead, samples_mv, counts_per_mv, float(record.fs) * (a_frame or 1))
 
 
 def _first_line(error: Exception) -> str:

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 
 from core.notices import Notice
 from core.wording.lists import joined, named
+from core.wording.numbers import clock, lasting
 
 NOTICE_WORDS = {"stop": "Stop", "caution": "Caution", "info": "Note"}
 
@@ -21,12 +22,21 @@ def limb_leads_derived(derived: Sequence[str]) -> Notice:
 
 def stretch_chosen(start_s: float, length_s: float, duration_s: float) -> Notice:
     """Ten seconds of a long recording were taken."""
-    minutes, seconds = divmod(round(start_s), 60)
     return Notice(
         "stretch-chosen",
         "info",
-        f"The recording lasts {duration_s / 60:.0f} min; its cleanest {length_s:.0f} s are used, "
-        f"from {minutes}:{seconds:02d} min on.",
+        f"The recording lasts {lasting(duration_s)}; its cleanest {length_s:.0f} s are used, "
+        f"from {clock(start_s)} (h:min:s) on.",
+    )
+
+
+def stretch_asked(start_s: float, stop_s: float, duration_s: float) -> Notice:
+    """The reader chose a stretch of a recording."""
+    return Notice(
+        "stretch-asked",
+        "info",
+        f"The recording lasts {lasting(duration_s)}; as chosen, only {clock(start_s)} "
+        f"to {clock(stop_s)} (h:min:s) is used.",
     )
 
 

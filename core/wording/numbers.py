@@ -44,3 +44,16 @@ def digits_apart(value: float, *limits: float | None) -> int:
     return next(
         (n for n in range(2, 6) if all(round(value, n) != round(limit, n) for limit in known)), 6
     )
+
+
+def clock(seconds: float) -> str:
+    """Hours, minutes and seconds from a recording's start: ``"0:02:50"``."""
+    minutes, rest = divmod(round(seconds), 60)
+    return f"{minutes // 60}:{minutes % 60:02d}:{rest:02d}"
+
+
+def lasting(seconds: float) -> str:
+    """A length of time in the unit that suits it: ``"45 s"``, ``"6 min"``, ``"24.0 h"``."""
+    if seconds < 120:
+        return f"{seconds:.0f} s"
+    return f"{seconds / 60:.0f} min" if seconds < 7200 else f"{seconds / 3600:.1f} h"

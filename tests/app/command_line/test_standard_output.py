@@ -88,7 +88,7 @@ def test_two_outputs_never_share_it_and_nothing_is_read_for_them(outputs, monkey
     def read(*_: object) -> None:
         raise AssertionError("read")
 
-    monkeypatch.setattr(compare_command, "read_named", read)
+    monkeypatch.setattr(compare_command, "read_pair", read)
     options = [part for kind in outputs for part in (f"--{kind}", "-")]
     assert main(["compare", *PAIR, *options]) == 2
     captured = capsys.readouterr()

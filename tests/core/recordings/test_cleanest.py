@@ -37,7 +37,7 @@ def test_the_quiet_stretch_is_taken_and_said(monitoring):
     )
     notice = cut.notices[-1]
     assert notice.code == "stretch-chosen"
-    assert "from 2:50 min on" in notice.text
+    assert "from 0:02:50 (h:min:s) on" in notice.text
 
 
 def test_a_stretch_with_a_lead_off_is_never_taken(monitoring):

@@ -12,7 +12,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.beats.alignment import cut_windows, lags_to_template, shifted, top_of_parabola
-from core.beats.detection import detect_beats
+from core.beats.detection import detect_beats, slope_power, stands_out, telling_of
+from core.beats.drowned import drowned_leads
 from core.beats.kinds import SAME_SHAPE, dominant_beat, premature, shape_correlation
 from core.beats.representative import beat_locked_part, representative_of
 from core.conditioning.gaps import bridge_gaps
@@ -72,6 +73,8 @@ class BeatAnalysis:
         Sample of R in the representative beat.
     spikes : ndarray of int
         Samples of the pacing spikes that were bridged.
+    drowned : ndarray of bool, shape (8,)
+        Leads in which no QRS can be told from the noise; the others alone decide on beats.
     """
 
     sampling_rate_hz: float
@@ -83,12 +86,18 @@ class BeatAnalysis:
     aligned_mv: NDArray[np.float64]
     representative_mv: NDArray[np.float64]
     r_index: int
+    drowned: NDArray[np.bool_]
     spikes: NDArray[np.int64] = field(default_factory=lambda: np.empty(0, dtype=np.int64))
 
     @property
     def paced(self) -> bool:
         """Whether the recording holds pacing spikes, rather than a stray artefact or two."""
         return self.spikes.size >= FEWEST_SPIKES
+
+    @property
+    def telling_mv(self) -> NDArray[np.float64]:
+        """The representative beat in the leads that are not drowned."""
+        return np.asarray(self.representative_mv[~self.drowned])
 
     @property
     def used(self) -> tuple[int, ...]:
@@ -110,13 +119,15 @@ def analyse_beats(recording: Recording) -> BeatAnalysis:
     raw = bridge_gaps(np.where(missing, 0.0, raw), missing)
     # A lead that holds nothing at all is a matter of its own grade, not of every beat.
     gap = np.asarray(missing[~missing.all(axis=1)].any(axis=0))
-    spikes = find_spikes(raw, rate)
+    # Hum is a row of spikes; a lead with pacing spikes stands out whatever else it holds.
+    spikes = find_spikes(raw[telling_of(stands_out(slope_power(raw, rate)))], rate)
     raw = bridge_spikes(raw, spikes, rate)
 
     centres = detect_beats(raw, rate)
     if centres.size < FEWEST_BEATS:
         raise NotEnoughBeats(_too_few(name, recording.duration_s, centres.size))
-    return replace(_Rounds(name, rate, raw, gap, centres).settle(), spikes=spikes)
+    drowned = drowned_leads(raw, centres, rate)
+    return replace(_Rounds(name, rate, raw, gap, centres, drowned).settle(), spikes=spikes)
 
 
 def _too_few(name: str, duration_s: float, n: int) -> str:
@@ -137,8 +148,10 @@ class _Rounds:
         raw: NDArray[np.float64],
         gap: NDArray[np.bool_],
         centres: NDArray[np.int64],
+        drowned: NDArray[np.bool_],
     ) -> None:
         self.name, self.rate, self.raw, self.gap = name, rate, raw, gap
+        self.drowned, self.telling = drowned, ~drowned
         self.n_samples = raw.shape[1]
         usual_rr_s = float(np.median(np.diff(centres))) / rate
         self.before = round(min(BEFORE_SHARE * usual_rr_s, LONGEST_BEFORE_S) * rate)
@@ -150,11 +163,11 @@ class _Rounds:
 
     def settle(self) -> BeatAnalysis:
         qrs = cut_windows(self.raw, self._whole(), self.half, self.half)
-        template = qrs[dominant_beat(qrs)]
+        template = qrs[dominant_beat(qrs[:, self.telling])]
         for _ in range(2):
             self._align(template)
             qrs = self._aligned(self.half, self.half, np.arange(self.centres.size))
-            alike = shape_correlation(qrs, template) >= SAME_SHAPE
+            alike = self._likeness(qrs, template) >= SAME_SHAPE
             if not alike.any():
                 raise NotEnoughBeats(_too_few(self.name, self.n_samples / self.rate, 0))
             template = np.median(qrs[alike], axis=0)
@@ -190,6 +203,7 @@ class _Rounds:
             aligned_mv=aligned,
             representative_mv=representative_of(aligned),
             r_index=self.before,
+            drowned=self.drowned,
         )
 
     def _whole(self) -> NDArray[np.int64]:
@@ -204,14 +218,19 @@ class _Rounds:
         """Move every centre to where the template fits best."""
         whole = self._whole()
         reach = self.half + self.lag
-        windows = cut_windows(self.signal, whole, reach, reach)
-        moved = whole + lags_to_template(windows, template, self.lag)
+        windows = cut_windows(self.signal[self.telling], whole, reach, reach)
+        moved = whole + lags_to_template(windows, template[self.telling], self.lag)
         self.centres = np.clip(moved, 0, self.n_samples - 1)
+
+    def _likeness(
+        self, qrs: NDArray[np.float64], template: NDArray[np.float64]
+    ) -> NDArray[np.float64]:
+        return shape_correlation(qrs[:, self.telling], template[self.telling])
 
     def _put_r_at_largest(self, template: NDArray[np.float64]) -> None:
         """R is where the template's leads together are largest, to a fraction of a sample."""
         level = np.median(template[:, [0, -1]], axis=1, keepdims=True)
-        power = np.mean((template - level) ** 2, axis=0)
+        power = np.mean((template - level)[self.telling] ** 2, axis=0)
         top = int(np.clip(np.argmax(power), 1, power.size - 2))
         fraction = top_of_parabola(*power[top - 1 : top + 2])
         self.centres = np.clip(self.centres + top + fraction - self.half, 0, self.n_samples - 1)
@@ -220,7 +239,7 @@ class _Rounds:
         """Why each beat is left out of the representative beat; None where it is used."""
         whole = self._whole()
         qrs = self._aligned(self.half, self.half, np.arange(whole.size))
-        same = shape_correlation(qrs, template)
+        same = self._likeness(qrs, template)
         early = premature(self.centres / self.rate)
         reasons: list[str | None] = []
         for index, centre in enumerate(whole):
@@ -279,6 +298,6 @@ class _Rounds:
         self, aligned: NDArray[np.float64], representative: NDArray[np.float64]
     ) -> NDArray[np.bool_]:
         """Beats that lie much farther from the representative than beats usually do."""
-        away = np.sqrt(np.mean((aligned - representative) ** 2, axis=(1, 2)))
+        away = np.sqrt(np.mean((aligned - representative)[:, self.telling] ** 2, axis=(1, 2)))
         noisy = away > NOISY_TIMES * np.median(away)
         return noisy if aligned.shape[0] - noisy.sum() >= FEWEST_BEATS else np.zeros_like(noisy)

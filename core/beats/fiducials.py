@@ -59,8 +59,8 @@ class Fiducials:
 
 
 def find_fiducials(analysis: BeatAnalysis) -> Fiducials:
-    """Fiducial points of a representative beat."""
-    beat, rate, r = analysis.representative_mv, analysis.sampling_rate_hz, analysis.r_index
+    """Fiducial points of a representative beat, by the leads that are not drowned."""
+    beat, rate, r = analysis.telling_mv, analysis.sampling_rate_hz, analysis.r_index
     onset, offset = _qrs_onset_and_offset(beat, rate, r)
     t_peak, t_offset = _t_peak_and_offset(beat, rate, offset)
     p = _p_onset_and_offset(analysis, onset)
@@ -143,7 +143,7 @@ def _t_peak_and_offset(beat: NDArray[np.float64], rate: float, qrs_offset: int) 
 def _p_onset_and_offset(
     analysis: BeatAnalysis, qrs_onset: int
 ) -> tuple[int, int] | tuple[None, None]:
-    beat, rate = analysis.representative_mv, analysis.sampling_rate_hz
+    beat, rate = analysis.telling_mv, analysis.sampling_rate_hz
     first = max(0, qrs_onset - round(0.27 * rate))
     last = qrs_onset - round(0.010 * rate)
     if last - first < round(0.06 * rate):
@@ -178,6 +178,7 @@ def _p_onset_and_offset(
 def _left_after_averaging(analysis: BeatAnalysis, first: int, last: int) -> float:
     """Noise that the representative beat still has in a stretch, slow offsets aside."""
     residual = (analysis.aligned_mv - analysis.representative_mv)[:, :, first:last]
+    residual = residual[:, ~analysis.drowned]
     smooth = low_pass(residual, cutoff_hz=25.0, sampling_rate_hz=analysis.sampling_rate_hz)
     smooth = smooth - smooth.mean(axis=-1, keepdims=True)
     return float(np.sqrt(np.mean(smooth**2) / analysis.aligned_mv.shape[0]))

@@ -27,7 +27,12 @@ from core.quality.faults import Fault, find_faults
 from core.quality.lead_quality import SAMPLES_MISSING, LeadQuality, grade_leads
 from core.quality.limb_algebra import limb_lead_contradiction_mv
 from core.quality.right_leg import right_leg_interchange
-from core.recordings.leads import TWELVE_LEADS, independent_from_twelve, twelve_from_independent
+from core.recordings.leads import (
+    INDEPENDENT_LEADS,
+    TWELVE_LEADS,
+    independent_from_twelve,
+    twelve_from_independent,
+)
 from core.recordings.recording import Recording
 from core.settings import Settings
 from core.wording import notices as say
@@ -258,7 +263,8 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     beats_mv = twelve(calmed(analysis.aligned_mv))
     residual_mv = twelve_from_independent(analysis.aligned_mv - analysis.representative_mv)
     _, _, q_mv = qrs_waves(beat_mv[:, points.qrs_window()])
-    quality = grade_leads(recording)
+    drowned = [lead for lead, lost in zip(INDEPENDENT_LEADS, analysis.drowned, strict=True) if lost]
+    quality = grade_leads(recording, drowned)
     first = fiducials.qrs_onset if fiducials.p_onset is None else fiducials.p_onset
     # A lead that was lost on its way contradicts the others; one that was recorded flat does not.
     flat = None

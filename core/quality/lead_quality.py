@@ -1,7 +1,8 @@
-"""Leads that hold no usable tracing: missing, flat or clipped."""
+"""Leads that hold no usable tracing: missing, flat, clipped or drowned in noise."""
 
 from __future__ import annotations
 
+from collections.abc import Collection
 from dataclasses import dataclass
 
 import numpy as np
@@ -17,7 +18,11 @@ MOST_MISSING = 0.2
 # Share of samples that lie exactly on the lead's extreme value: a tracing touches its own
 # extreme once a beat, a clipped one stays there.
 CLIPPED_SHARE = 0.02
+# Longer than any wave of a beat: what rests on its extreme for so long has left the amplifier's
+# range altogether.
+SATURATED_S = 0.3
 SAMPLES_MISSING = "samples missing"
+DROWNED = "noise without a QRS (electrode off?)"
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,15 +34,23 @@ class LeadQuality:
     reason: str | None = None
 
 
-def grade_leads(recording: Recording) -> tuple[LeadQuality, ...]:
+def grade_leads(recording: Recording, drowned: Collection[str] = ()) -> tuple[LeadQuality, ...]:
     """Grade each of the twelve leads of a recording.
 
     The other four limb leads are computed from I and II throughout, so they fall with either.
+
+    Parameters
+    ----------
+    recording : Recording
+    drowned : collection of str
+        Leads in which the search for beats found no QRS.
     """
-    grades = {
-        lead: _grade(lead, recording.signal_mv[:, column])
-        for column, lead in enumerate(recording.leads)
-    }
+    grades = {}
+    for column, lead in enumerate(recording.leads):
+        samples_mv = recording.signal_mv[:, column]
+        reason = _fault(samples_mv, SATURATED_S * recording.sampling_rate_hz)
+        reason = reason or (DROWNED if lead in drowned else None)
+        grades[lead] = LeadQuality(lead, usable=reason is None, reason=reason)
     for source in ("I", "II"):
         if grades[source].usable:
             continue
@@ -48,15 +61,22 @@ def grade_leads(recording: Recording) -> tuple[LeadQuality, ...]:
     return tuple(grades.values())
 
 
-def _grade(lead: str, samples_mv: NDArray[np.float64]) -> LeadQuality:
+def _fault(samples_mv: NDArray[np.float64], saturated_samples: float) -> str | None:
     missing = np.isnan(samples_mv)
     if missing.mean() > MOST_MISSING:
-        return LeadQuality(lead, usable=False, reason=SAMPLES_MISSING)
+        return SAMPLES_MISSING
     held = samples_mv[~missing]
     high, low = float(held.max()), float(held.min())
     if high - low < FLAT_MV:
-        return LeadQuality(lead, usable=False, reason="flat")
+        return "flat"
     for extreme in (high, low):
-        if np.mean(held == extreme) > CLIPPED_SHARE:
-            return LeadQuality(lead, usable=False, reason="clipped")
-    return LeadQuality(lead, usable=True)
+        at_extreme = samples_mv == extreme
+        if at_extreme.sum() > CLIPPED_SHARE * held.size:
+            return "saturated" if _longest_run(at_extreme) > saturated_samples else "clipped"
+    return None
+
+
+def _longest_run(held: NDArray[np.bool_]) -> int:
+    """Most successive samples that are true."""
+    edges = np.flatnonzero(np.diff(held.astype(np.int8), prepend=0, append=0))
+    return int((edges[1::2] - edges[::2]).max(initial=0))

@@ -30,6 +30,8 @@ def test_a_clean_recording_is_usable_in_every_lead():
         (lambda x: np.where(np.arange(x.size) < x.size // 3, np.nan, x), "samples missing"),
         (lambda x: np.clip(x, None, 0.1), "clipped"),
         (lambda x: np.clip(x, -0.02, None), "clipped"),
+        (lambda x: np.where(np.arange(x.size) < x.size // 10, 5.0, x), "saturated"),
+        (lambda x: np.where(np.arange(x.size) > x.size // 10, -5.0, x), "saturated"),
     ],
 )
 @pytest.mark.parametrize("lead", ["aVF", "V2"])

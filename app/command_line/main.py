@@ -13,6 +13,7 @@ from collections.abc import Sequence
 from app.command_line import (
     compare_command,
     demo_command,
+    export_command,
     measure_command,
     move_command,
     open_command,
@@ -23,6 +24,14 @@ from core.errors import ComparisonError, ModelError, RecordingError
 from core.version import program_version
 from core.wording.caution import CAUTION
 
+_COMMANDS = (
+    open_command,
+    compare_command,
+    measure_command,
+    move_command,
+    export_command,
+    demo_command,
+)
 DONE, NOT_COMPARABLE, WRONG_USE = 0, 1, 2
 
 
@@ -38,7 +47,14 @@ def build_parser() -> argparse.ArgumentParser:
     )
     parser.add_argument("--version", action="version", version=f"samespot {program_version()}")
     commands = parser.add_subparsers(metavar="COMMAND")
-    for module in (open_command, compare_command, measure_command, move_command, demo_command):
+    for module in (
+        open_command,
+        compare_command,
+        measure_command,
+        move_command,
+        export_command,
+        demo_command,
+    ):
         module.add_to(commands)
     parser.set_defaults(run=open_command.run, earlier=None, later=None)
     return parser

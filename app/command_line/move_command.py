@@ -8,11 +8,10 @@ from pathlib import Path
 from typing import Any
 
 from app.command_line.failures import CommandFailed
-from app.command_line.outputs import say
+from app.command_line.outputs import say, writing_record
 from app.command_line.recording_arguments import RECORDING_HELP, add_recording_options, read_named
 from core import ElectrodeMove, move_electrodes
 from core.recordings.leads import CHEST_LEADS
-from core.recordings.wfdb_writer import write_wfdb
 
 
 class _StartMove(argparse.Action):
@@ -80,11 +79,4 @@ def run(options: argparse.Namespace) -> None:
         if type(error) is not ValueError:  # a RecordingError speaks for itself
             raise
         raise CommandFailed(f"{error}.") from error
-    stem = Path(options.out)
-    try:
-        header, _ = write_wfdb(moved, stem)
-    except OSError as error:
-        raise CommandFailed(
-            f"{stem}: cannot be written ({error.strerror or error}). Choose another folder."
-        ) from error
-    say(f"wrote {header.name} beside its signal file")
+    say(writing_record(moved, Path(options.out)))

@@ -7,7 +7,9 @@ import sys
 from pathlib import Path
 
 from app.command_line.failures import CommandFailed
+from core import Recording
 from core.files import write_atomically
+from core.recordings.wfdb_writer import write_wfdb
 
 STANDARD_OUTPUT = "-"
 
@@ -58,6 +60,23 @@ def write_output(target: str, content: bytes) -> None:
             f"{target}: cannot be written ({error.strerror or error}). "
             "Choose another file or folder."
         ) from error
+
+
+def writing_record(recording: Recording, stem: Path) -> str:
+    """Write a WFDB record; what to say of it.
+
+    Raises
+    ------
+    CommandFailed
+        If the record cannot be written.
+    """
+    try:
+        header, _ = write_wfdb(recording, stem)
+    except OSError as error:
+        raise CommandFailed(
+            f"{stem}: cannot be written ({error.strerror or error}). Choose another folder."
+        ) from error
+    return f"wrote {header.name} beside its signal file"
 
 
 def refuse_two_to_standard_output(*targets: str | None) -> None:

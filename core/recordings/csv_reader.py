@@ -15,8 +15,8 @@ from numpy.typing import NDArray
 
 from core.errors import RecordingError
 from core.recordings.assemble import Channel, assemble_recording
+from core.recordings.comments import Comments
 from core.recordings.csv_header import (
-    Comments,
     LeadColumn,
     header_of_line,
     is_comment,
@@ -83,9 +83,10 @@ def read_csv(
             _channels(name, table, comments, unit),
             sampling_rate_hz=rate_hz,
             source=Source(name, FORMAT_NAME, sha256_of_files([path])),
-            subject=comments.subject(),
+            subject=comments.subject(comments.recorded_at),
             recorded_at=comments.recorded_at,
             filters=comments.filters,
+            electrode_placement=comments.electrode_placement,
         )
     except (RecordingError, OSError, MemoryError):
         raise

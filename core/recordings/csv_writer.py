@@ -11,6 +11,8 @@ from numpy.typing import NDArray
 
 from core.errors import RecordingError
 from core.files import write_atomically
+from core.recordings.all_leads import all_leads_mv, steps_of_all_leads
+from core.recordings.comments import said_of
 from core.recordings.recording import Recording
 
 # A step of 1 pV is finer than any amplifier; more decimals would only be rounding noise.
@@ -19,19 +21,28 @@ _ROWS_AT_ONCE = 20_000
 
 
 def write_csv(recording: Recording, path: Path) -> None:
-    """Write a table that `read_csv` reads back to within half a step of the quantisation.
+    """Write `recording_csv` to a file, which appears whole or not at all.
 
-    A missing sample is an empty cell. The file appears whole or not at all.
+    Raises
+    ------
+    OSError
+        If the folder cannot be written to.
+    """
+    write_atomically(path, recording_csv(recording))
+
+
+def recording_csv(recording: Recording) -> bytes:
+    """A table that `read_csv` reads back to within half a step of the quantisation.
+
+    A missing sample is an empty cell.
 
     Raises
     ------
     RecordingError
         If a sample is infinite.
-    OSError
-        If the folder cannot be written to.
     """
     leads = [*recording.leads, *recording.further_leads]
-    table_mv = _table(recording)
+    table_mv = all_leads_mv(recording)
     if np.isinf(table_mv).any():
         raise RecordingError(
             f"{recording.source.name}: the signal holds infinite values. Choose another recording."
@@ -40,13 +51,7 @@ def write_csv(recording: Recording, path: Path) -> None:
     lines = [f"# {key}: {value}" for key, value in _said(recording)]
     lines.append(",".join(["time (s)", *(f"{lead} (mV)" for lead in leads)]))
     text = "\n".join([*lines, *_rows(table_mv, decimals, recording.sampling_rate_hz)])
-    write_atomically(path, (text + "\n").encode())
-
-
-def _table(recording: Recording) -> NDArray[np.float64]:
-    if not recording.further_leads:
-        return recording.signal_mv
-    return np.hstack([recording.signal_mv, recording.further_mv])
+    return (text + "\n").encode()
 
 
 def _decimals(recording: Recording, table_mv: NDArray[np.float64]) -> list[int]:
@@ -54,10 +59,8 @@ def _decimals(recording: Recording, table_mv: NDArray[np.float64]) -> list[int]:
 
     Steps that are no power of ten, and leads derived from others, fall between the decimals.
     """
-    finest = max(recording.counts_per_mv)
-    counts = [*recording.counts_per_mv, *[finest] * len(recording.further_leads)]
     decimals = []
-    for column, counts_per_mv in enumerate(counts):
+    for column, counts_per_mv in enumerate(steps_of_all_leads(recording)):
         of_step = min(max(math.ceil(math.log10(counts_per_mv) - 1e-9), 0), MOST_DECIMALS)
         values = table_mv[:, column]
         known = values[~np.isnan(values)]
@@ -90,26 +93,11 @@ def _time_decimals(rate_hz: float) -> int:
 
 
 def _said(recording: Recording) -> Iterator[tuple[str, str]]:
-    subject, filters = recording.subject, recording.filters
-    counts = [f"{count!r}" for count in recording.counts_per_mv]
-    same = len(set(counts)) == 1
-    steps = counts + [repr(max(recording.counts_per_mv))] * len(recording.further_leads)
-    said = {
-        "patient id": subject.id,
-        "name": subject.name,
-        "sex": subject.sex,
-        "age": None if subject.age_years is None else f"{subject.age_years:g}",
-        "birth date": subject.born_on and subject.born_on.isoformat(),
-        "recorded at": recording.recorded_at and recording.recorded_at.isoformat(),
-        "sampling_rate_hz": repr(recording.sampling_rate_hz),
-        "counts_per_mv": counts[0] if same else " ".join(steps),
-        "leads derived": " ".join(recording.leads_derived),
-        "high_pass_hz": filters.high_pass_hz and repr(filters.high_pass_hz),
-        "low_pass_hz": filters.low_pass_hz and repr(filters.low_pass_hz),
-        "notch_hz": filters.notch_hz and repr(filters.notch_hz),
-    }
-    for key, value in said.items():
-        # A value of several lines would end up among the samples.
-        plain = " ".join((value or "").split())
-        if plain:
-            yield key, plain
+    yield from said_of(recording)
+    if recording.recorded_at is not None:
+        yield "recorded at", recording.recorded_at.isoformat()
+    yield "sampling_rate_hz", repr(recording.sampling_rate_hz)
+    steps = [repr(count) for count in steps_of_all_leads(recording)]
+    yield "counts_per_mv", steps[0] if len(set(steps)) == 1 else " ".join(steps)
+    if recording.leads_derived:
+        yield "leads derived", " ".join(recording.leads_derived)

@@ -3,9 +3,6 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
-
-from core.recordings.recording import Subject
 
 _FEMALE = {"f", "female", "w", "woman"}
 _MALE = {"m", "male", "man"}
@@ -34,22 +31,3 @@ def age_of_word(word: str | None) -> float | None:
     days_in = {"": 365.25, "y": 365.25, "m": 365.25 / 12, "w": 7.0, "d": 1.0}
     years = float(found[1]) * days_in[found[2]] / 365.25
     return years if years <= OLDEST_YEARS else None
-
-
-def subject_of_comments(comments: Iterable[str]) -> Subject:
-    """What the comment lines of a header say, written as ``key: value`` in any style."""
-    said: dict[str, str] = {}
-    for comment in comments:
-        key, colon, value = comment.partition(":")
-        if colon and value.strip():
-            said.setdefault(key.strip(" <>#\t").lower(), value.strip())
-
-    def first(*keys: str) -> str | None:
-        return next((said[key] for key in keys if key in said), None)
-
-    return Subject(
-        id=first("patient id", "subject id", "patient", "subject"),
-        name=first("name", "patient name"),
-        sex=sex_of_word(first("sex", "gender")),
-        age_years=age_of_word(first("age")),
-    )

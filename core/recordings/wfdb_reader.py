@@ -14,11 +14,11 @@ import numpy as np
 
 from core.errors import RecordingError
 from core.recordings.assemble import Channel, assemble_recording, refuse_rate
+from core.recordings.comments import Comments
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.held import Held, held_in_memory
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.recording import Recording, Source
-from core.recordings.subject_words import subject_of_comments
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 
 FORMAT_NAME = "WFDB"
@@ -69,12 +69,15 @@ def open_wfdb(header_path: Path) -> Held:
     def read(first: int, last: int | None, start_s: float) -> Recording:
         record = _read(header_path, first, last)
         channels = list(_channels(stem.name, record))
+        said = Comments(record.comments or [])
         return assemble_recording(
             channels,
             sampling_rate_hz=rate_hz,
             source=source,
-            subject=subject_of_comments(record.comments or []),
+            subject=said.subject(header.base_datetime),
             recorded_at=header.base_datetime,
+            filters=said.filters,
+            electrode_placement=said.electrode_placement,
             start_s=start_s,
         )
 

@@ -11,6 +11,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
+from core.recordings.all_leads import all_leads_mv, steps_of_all_leads
+from core.recordings.comments import said_of
 from core.recordings.recording import Recording
 
 # WFDB's own mark for a sample that isn't there, by storage format.
@@ -44,7 +46,8 @@ def write_wfdb(recording: Recording, stem: Path) -> tuple[Path, Path]:
             f"{stem.name}: a WFDB record name may hold letters, digits, - and _ only. "
             "Choose another name."
         )
-    counts, storage = _counts(recording)
+    leads_mv, counts_per_mv = all_leads_mv(recording), steps_of_all_leads(recording)
+    counts, storage = _counts(recording.source.name, leads_mv, counts_per_mv)
     import wfdb
 
     with tempfile.TemporaryDirectory(dir=stem.parent, prefix=".samespot-") as folder:
@@ -52,12 +55,12 @@ def write_wfdb(recording: Recording, stem: Path) -> tuple[Path, Path]:
             stem.name,
             fs=recording.sampling_rate_hz,
             units=["mV"] * counts.shape[1],
-            sig_name=list(recording.leads),
+            sig_name=[*recording.leads, *recording.further_leads],
             d_signal=counts,
             fmt=[storage] * counts.shape[1],
-            adc_gain=list(recording.counts_per_mv),
+            adc_gain=counts_per_mv,
             baseline=[0] * counts.shape[1],
-            comments=_comments(recording),
+            comments=[f"{key}: {value}" for key, value in said_of(recording)],
             base_datetime=_whole_second(recording.recorded_at),
             write_dir=folder,
         )
@@ -68,32 +71,23 @@ def write_wfdb(recording: Recording, stem: Path) -> tuple[Path, Path]:
     return written[1], written[0]
 
 
-def _counts(recording: Recording) -> tuple[NDArray[np.int64], str]:
+def _counts(
+    name: str, leads_mv: NDArray[np.float64], counts_per_mv: list[float]
+) -> tuple[NDArray[np.int64], str]:
     """Whole steps of every lead, and the smallest storage format that holds them."""
-    steps = recording.signal_mv * np.array(recording.counts_per_mv)
+    steps = leads_mv * np.array(counts_per_mv)
     missing = np.isnan(steps)
     counts = np.rint(np.where(missing, 0.0, steps))
     largest = float(np.abs(counts).max())
     storage = next((fmt for fmt, mark in _MISSING.items() if largest < -mark), None)
     if storage is None:
         raise RecordingError(
-            f"{recording.source.name}: the signal does not fit into 32 bits at the file's "
+            f"{name}: the signal does not fit into 32 bits at the file's "
             "own steps. Export the recording again at 1 µV a step."
         )
     whole = counts.astype(np.int64)
     whole[missing] = _MISSING[storage]
     return whole, storage
-
-
-def _comments(recording: Recording) -> list[str]:
-    subject = recording.subject
-    said = {
-        "patient id": subject.id,
-        "name": subject.name,
-        "sex": subject.sex,
-        "age": None if subject.age_years is None else f"{subject.age_years:g}",
-    }
-    return [f"{key}: {value}" for key, value in said.items() if value is not None]
 
 
 def _whole_second(at: datetime | None) -> datetime | None:

@@ -4,8 +4,8 @@ import numpy as np
 import pytest
 
 from core import RecordingError, read_recording
+from core.recordings.comments import Comments
 from core.recordings.leads import TWELVE_LEADS
-from core.recordings.subject_words import subject_of_comments
 from tests.helpers.wfdb_files import write_record
 
 
@@ -68,9 +68,9 @@ def test_a_sample_that_is_not_there_is_nan(tmp_path, counts):
 def test_header_comments_tell_of_the_person():
     styles = (["<age>: 51", "<sex>: F"], ["age: 51", "sex: female"], ["Age: 51", "Gender: w"])
     for comments in styles:
-        subject = subject_of_comments(comments)
+        subject = Comments(comments).subject(None)
         assert (subject.age_years, subject.sex) == (51.0, "female")
-    assert subject_of_comments(["Diagnosis: none", "no colon here"]).id is None
+    assert Comments(["Diagnosis: none", "no colon here"]).subject(None).id is None
 
 
 @pytest.mark.parametrize(

@@ -34,6 +34,8 @@ J_PER_AREA_AND_HZ = -0.277e-3 / 0.05
 LEAST_SHIFT_MV = 0.010
 # Below 100 Hz the errors of R reach 0.12 to 0.2 mV (Berson 1977); above, they don't count.
 LOW_PASS_COUNTS_HZ = 100.0
+# What a recorder keeps free of aliasing (common practice, no source).
+BAND_SHARE_OF_RATE = 0.4
 # Intervals that scatter by more than this share of their mean, and no P wave.
 IRREGULAR_SHARE = 0.12
 
@@ -131,15 +133,16 @@ def _of_filters(earlier: RecordingReport, later: RecordingReport) -> list[Notice
             notices.append(
                 say.high_pass_differs(high[0], high[1], TWELVE_LEADS[row], float(moved[row]))
             )
-    low = filters[0].low_pass_hz, filters[1].low_pass_hz
-    if (
-        low[0] is not None
-        and low[1] is not None
-        and low[0] != low[1]
-        and min(low[0], low[1]) < LOW_PASS_COUNTS_HZ
-    ):
-        notices.append(say.low_pass_differs(low[0], low[1]))
+    ends = _band_end_hz(earlier.recording), _band_end_hz(later.recording)
+    if ends[0] != ends[1] and min(ends) < LOW_PASS_COUNTS_HZ:
+        notices.append(say.bands_differ(*ends))
     return notices
+
+
+def _band_end_hz(recording: Recording) -> float:
+    """The highest frequency that a recording holds."""
+    by_rate = BAND_SHARE_OF_RATE * recording.sampling_rate_hz
+    return min(by_rate, recording.filters.low_pass_hz or by_rate)
 
 
 def _capital(words: Sequence[str]) -> list[str]:

@@ -128,14 +128,14 @@ def high_pass_differs(earlier_hz: float, later_hz: float, lead: str, shift_mv: f
     )
 
 
-def low_pass_differs(earlier_hz: float, later_hz: float) -> Notice:
-    """Two low-pass filters."""
+def bands_differ(earlier_hz: float, later_hz: float) -> Notice:
+    """Two recordings that hold different ranges of frequencies."""
     return Notice(
         "low-pass-differs",
         "caution",
-        f"Low-pass filter {earlier_hz:g} Hz against {later_hz:g} Hz: R and S differ by up to "
-        "0.2 mV for that alone, and the shift estimate with them. Record both with the same "
-        "filter.",
+        f"The earlier recording holds frequencies up to {earlier_hz:g} Hz, the later up to "
+        f"{later_hz:g} Hz, by the filter stated or the sampling rate: R and S differ by up to "
+        "0.2 mV for that alone, and the shift estimate with them. Record both alike.",
     )
 
 

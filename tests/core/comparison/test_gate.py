@@ -161,7 +161,8 @@ def test_the_high_pass_caution_says_how_far_j_moves(pair):
 
 
 @pytest.mark.parametrize(
-    ("low_pass", "told"), [((150, 150), False), ((150, 300), False), ((40, 150), True)]
+    ("low_pass", "told"),
+    [((150, 150), False), ((150, 300), False), ((40, 150), True), ((40, None), True)],
 )
 def test_low_pass_filters(pair, low_pass, told):
     earlier, later = (
@@ -171,10 +172,21 @@ def test_low_pass_filters(pair, low_pass, told):
     assert ("low-pass-differs" in codes(earlier, later)) == told
 
 
+@pytest.mark.parametrize(
+    ("rates_hz", "told"), [((500, 1000), False), ((500, 250), False), ((500, 125), True)]
+)
+def test_a_low_sampling_rate_is_a_filter(pair, rates_hz, told):
+    earlier, later = (
+        with_recording(report, sampling_rate_hz=hz)
+        for report, hz in zip(pair, rates_hz, strict=True)
+    )
+    assert ("low-pass-differs" in codes(earlier, later)) == told
+
+
 def test_a_filter_notice_names_both_filters_in_their_order(pair):
-    for kind, code, hz in (
-        ("low_pass_hz", "low-pass-differs", (40, 150)),
-        ("high_pass_hz", "high-pass-differs", (0.05, 0.25)),
+    for kind, code, hz, words in (
+        ("low_pass_hz", "low-pass-differs", (40, 150), "up to {} Hz, the later up to {} Hz"),
+        ("high_pass_hz", "high-pass-differs", (0.05, 0.25), "{} Hz against {} Hz"),
     ):
         for first, second in (hz, hz[::-1]):
             earlier, later = (
@@ -182,7 +194,7 @@ def test_a_filter_notice_names_both_filters_in_their_order(pair):
                 for report, cutoff in zip(pair, (first, second), strict=True)
             )
             found = {n.code: n.text for n in pair_notices(earlier, later, Settings())}
-            assert f"{first} Hz against {second} Hz" in found[code]
+            assert words.format(first, second) in found[code]
 
 
 def test_other_stated_placements_are_a_caution(pair):

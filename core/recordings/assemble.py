@@ -72,7 +72,7 @@ def assemble_recording(
     name = source.name
     by_lead: dict[str, Channel] = {}
     for channel in channels:
-        _refuse_rate(name, channel.sampling_rate_hz or sampling_rate_hz)
+        refuse_rate(name, channel.sampling_rate_hz or sampling_rate_hz)
         by_lead.setdefault(channel.lead, channel)
     _refuse_missing_leads(name, by_lead)
     if max(channel.samples_mv.size for channel in by_lead.values()) == 0:
@@ -134,12 +134,20 @@ def _frozen(columns: list[NDArray[np.float64]]) -> NDArray[np.float64]:
     return table
 
 
-def _refuse_rate(name: str, rate_hz: float) -> None:
+def refuse_rate(name: str, rate_hz: float) -> None:
+    """Refuse a rate that no ECG has.
+
+    Raises
+    ------
+    RecordingError
+        If it is outside `SAMPLING_RATE_RANGE_HZ`.
+    """
     low_hz, high_hz = SAMPLING_RATE_RANGE_HZ
     if not (math.isfinite(rate_hz) and low_hz <= rate_hz <= high_hz):
         raise RecordingError(
             f"{name}: the file states {rate_hz:g} samples a second; "
-            f"{low_hz:g} to {high_hz:g} can be read. Export the recording again at 500 Hz."
+            f"{low_hz:g} to {high_hz:g} can be read. Correct the rate or the unit "
+            "of time in the file, or export the recording again at 500 Hz."
         )
 
 

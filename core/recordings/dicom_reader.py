@@ -17,7 +17,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
-from core.recordings.assemble import Channel, assemble_recording
+from core.recordings.assemble import Channel, assemble_recording, refuse_rate
+from core.recordings.dicom_file import is_big_endian, read_dataset_of
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.lead_numbers import lead_of_code
 from core.recordings.leads import (
@@ -25,7 +26,10 @@ from core.recordings.leads import (
     can_derive_limb_leads,
     lead_in_sentence,
 )
+from core.recordings.quietly import quietly
 from core.recordings.recording import Filters, Recording, Source, Subject
+from core.recordings.shown import shown
+from core.recordings.size_limit import MOST_VALUES, refuse_too_long
 from core.recordings.subject_words import age_of_word, sex_of_word
 
 FORMAT_NAME = "DICOM"
@@ -61,7 +65,8 @@ class _Group:
 
     @property
     def duration_s(self) -> float:
-        return self.n_samples / self.sampling_rate_hz
+        # A rate of zero is refused by name, later.
+        return self.n_samples / self.sampling_rate_hz if self.sampling_rate_hz > 0 else 0.0
 
     def simultaneous_with(self, other: _Group) -> bool:
         return (self.sampling_rate_hz, self.n_samples, self.offset_ms, self.original) == (
@@ -78,26 +83,33 @@ def read_dicom(path: Path) -> Recording:
     Raises
     ------
     RecordingError
-        If the object is no ECG waveform, or no group holds twelve leads at once.
+        If the object is damaged, too large or no ECG waveform, or no group holds twelve leads at
+        once.
+    OSError
+        If the file cannot be opened.
     """
-    import pydicom
-
     name = path.name
     try:
-        dataset: Any = pydicom.dcmread(path)
-        groups = [
-            _decode_group(name, dataset, index)
-            for index in range(len(dataset.get("WaveformSequence") or []))
-        ]
-        subject, recorded_at = _subject(dataset), _recorded_at(dataset)
-    except RecordingError:
+        with quietly():  # pydicom warns of much that it mends, or that is refused below
+            return _recording(path)
+    except (RecordingError, OSError, MemoryError):
         raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
             f"{name}: the DICOM file is damaged. Export it again from where it is stored."
         ) from error
+
+
+def _recording(path: Path) -> Recording:
+    name = path.name
+    dataset = read_dataset_of(path)
+    _refuse_size(name, dataset)
+    groups = [
+        _decode_group(name, dataset, index)
+        for index in range(len(dataset.get("WaveformSequence") or []))
+    ]
     if not groups:
-        kind = dataset.get("Modality") or "no modality"
+        kind = shown(str(dataset.get("Modality") or "")) or "no modality"
         raise RecordingError(
             f"{name}: this DICOM object ({kind}) holds no waveform. Choose the ECG waveform object."
         )
@@ -106,11 +118,21 @@ def read_dicom(path: Path) -> Recording:
         list(group.channels.values()),
         sampling_rate_hz=group.sampling_rate_hz,
         source=Source(name, FORMAT_NAME, sha256_of_files([path])),
-        subject=subject,
-        recorded_at=recorded_at,
+        subject=_subject(dataset),
+        recorded_at=_recorded_at(dataset),
         filters=group.filters,
         electrode_placement=_electrode_placement(dataset),
     )
+
+
+def _refuse_size(name: str, dataset: Any) -> None:
+    """Refuse more samples than fit, in all groups together."""
+    for group in dataset.get("WaveformSequence") or []:
+        n_leads, n_samples = int(group.NumberOfWaveformChannels), int(group.NumberOfWaveformSamples)
+        rate_hz = float(group.SamplingFrequency)
+        if n_leads * n_samples > MOST_VALUES:
+            refuse_rate(name, rate_hz)
+        refuse_too_long(name, n_leads=n_leads, n_samples=n_samples, rate_hz=rate_hz)
 
 
 def _rhythm_group(name: str, groups: list[_Group]) -> _Group:
@@ -146,7 +168,10 @@ def _decode_group(name: str, dataset: Any, index: int) -> _Group:
     from pydicom.waveforms.numpy_handler import multiplex_array
 
     group = dataset.WaveformSequence[index]
-    stored = _sign_extended(multiplex_array(dataset, index, as_raw=True), group)
+    raw = multiplex_array(dataset, index, as_raw=True)
+    if is_big_endian(dataset):  # pydicom takes all samples for little-endian
+        raw = raw.byteswap()
+    stored = _sign_extended(raw, group)
     channels: dict[str, Channel] = {}
     for column, definition in enumerate(group.ChannelDefinitionSequence):
         found = _lead_of(definition)
@@ -239,7 +264,7 @@ def _unit_mv(name: str, lead: str, definition: Any) -> float:
     code = str(units[0].get("CodeValue") or "") if units else ""
     factor = MILLIVOLTS_PER_UNIT.get(code)
     if factor is None:
-        stated = f"in the unit '{code}', which is no voltage" if code else "without a unit"
+        stated = f"in the unit '{shown(code)}', which is no voltage" if code else "without a unit"
         raise RecordingError(f"{name}: lead {lead} is stored {stated}. Export it in microvolts.")
     return factor
 

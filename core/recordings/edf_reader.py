@@ -32,6 +32,7 @@ from core.recordings.edf_layout import looks_like_edf as looks_like_edf
 from core.recordings.edf_subject import filters_of, recorded_at_of, subject_of, text_of
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
+from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
 from core.recordings.shown import shown
 from core.recordings.size_limit import refuse_too_long
@@ -77,7 +78,7 @@ def read_edf(path: Path) -> Recording:
     """
     name = path.name
     try:
-        with path.open("rb") as file:
+        with quietly(), path.open("rb") as file:
             layout = read_layout(name, file, path.stat().st_size)
             return _recording(path, file, layout)
     except (RecordingError, OSError, MemoryError):

@@ -81,6 +81,10 @@ def _read(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Rec
         )
     if not chosen.exists():
         raise RecordingError(f"{chosen}: there is no such file. Check the name and the folder.")
+    if not chosen.is_file():  # a pipe or a device may never end
+        raise RecordingError(
+            f"{chosen.name}: this is a pipe or a device, not a file. Save the recording to a file."
+        )
     with chosen.open("rb") as file:
         start = file.read(4096)
     if not start:

@@ -12,6 +12,7 @@ from pathlib import Path
 
 from core.errors import RecordingError
 from core.recordings.shown import shown
+from core.recordings.wfdb_lines import check_record_line, check_signal_line
 
 LARGEST_HEADER_BYTES = 1_000_000
 # Longer than any line of a signal or a segment; comments may be longer.
@@ -38,10 +39,6 @@ class _Header:
     def is_segmented(self) -> bool:
         return _SEGMENTED.match(self.lines[0][1]) is not None
 
-    def names(self) -> list[tuple[int, str]]:
-        """The first word of every line below the first: a signal file or a segment."""
-        return [(number, line.split()[0]) for number, line in self.lines[1:]]
-
 
 def files_of_record(header_path: Path) -> list[Path]:
     """The header, the headers of its segments, and the signal files, each once.
@@ -55,15 +52,17 @@ def files_of_record(header_path: Path) -> list[Path]:
     """
     name = header_path.name
     whole = _header(name, header_path)
+    check_record_line(_where(name, whole, whole.lines[0][0]), whole.lines[0][1])
     headers = [whole]
     if whole.is_segmented:
         headers += _segments(name, whole)
     paths = [header.path for header in headers]
     for header in headers[1:] if whole.is_segmented else headers:
-        for number, file_name in header.names():
+        for number, line in header.lines[1:]:
+            file_name, where = line.split()[0], _where(name, header, number)
             if file_name == NO_FILE:
                 continue
-            where = _where(name, header, number)
+            check_signal_line(where, line)
             if not _FILE_NAME.fullmatch(file_name):
                 raise _not_beside(where, file_name, "signal file")
             path = header_path.with_name(file_name)
@@ -105,7 +104,8 @@ def _header(name: str, path: Path) -> _Header:
 def _segments(name: str, whole: _Header) -> list[_Header]:
     """The headers of the segments, each once."""
     found: dict[str, _Header] = {}
-    for number, segment in whole.names():
+    for number, line in whole.lines[1:]:
+        segment = line.split()[0]
         if segment == NO_FILE or segment in found:
             continue
         where = _where(name, whole, number)
@@ -120,6 +120,8 @@ def _segments(name: str, whole: _Header) -> list[_Header]:
                 "one. Copy the whole record into one folder."
             )
         found[segment] = _header(name, path)
+        first, line = found[segment].lines[0]
+        check_record_line(_where(name, found[segment], first), line)
         if found[segment].is_segmented:
             raise _damaged(
                 f"{where} names the segment {shown(path.stem)}, which has segments itself"

@@ -92,11 +92,11 @@ def _read(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Rec
     for recognises, read in _READERS:
         if recognises(start):
             return read(chosen)
+    if looks_like_csv(start):
+        return read_csv(chosen, unit=unit, sampling_rate_hz=sampling_rate_hz)
     beside = chosen.with_suffix(".hea")
     if beside.is_file():  # the signal file of a WFDB record was named
         return read_wfdb(beside)
-    if looks_like_csv(start):
-        return read_csv(chosen, unit=unit, sampling_rate_hz=sampling_rate_hz)
     raise RecordingError(
         f"{chosen.name}: the content is not that of any readable format. Choose {READABLE}."
     )

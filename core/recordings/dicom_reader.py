@@ -181,11 +181,12 @@ def _decode_group(name: str, dataset: Any, index: int) -> _Group:
         unit_mv = _unit_mv(name, lead, definition)
         correction = _number(definition, "ChannelSensitivityCorrectionFactor", 1.0)
         step_mv = _number(definition, "ChannelSensitivity", 1.0) * correction * unit_mv
-        if not (np.isfinite(step_mv) and step_mv != 0):
-            raise RecordingError(
-                f"{name}: lead {lead} states a sensitivity of zero. Export the file again."
-            )
         baseline_mv = _number(definition, "ChannelBaseline", 0.0) * unit_mv
+        if not (np.isfinite(step_mv) and step_mv != 0 and np.isfinite(baseline_mv)):
+            raise RecordingError(
+                f"{name}: lead {lead} states a sensitivity or a baseline of zero or of no number. "
+                "Export the file again, calibrated."
+            )
         samples_mv = sign * (stored[:, column] * step_mv + baseline_mv)
         padding = group.get("WaveformPaddingValue")
         if padding is not None:

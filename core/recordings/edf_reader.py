@@ -19,7 +19,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
-from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ, Channel, assemble_recording
+from core.recordings.assemble import (
+    SAMPLING_RATE_RANGE_HZ,
+    STEP_RANGE_MV,
+    Channel,
+    assemble_recording,
+)
 from core.recordings.edf_layout import (
     Layout,
     damaged,
@@ -44,8 +49,6 @@ if TYPE_CHECKING:
 # Records of an interrupted recording that follow each other within so many samples follow on:
 # their times are rounded to what the writer found worth writing.
 FOLLOWS_ON_SAMPLES = 0.5
-# No converter is finer or coarser; beyond lies a header that means something else.
-PLAUSIBLE_STEP_MV = (1e-9, 1e3)
 
 
 @dataclass(frozen=True, slots=True)
@@ -164,7 +167,7 @@ def _scale_mv(
         ) from error
     steps = digital.max - digital.min
     step_mv = (physical.max - physical.min) / steps * unit_mv if steps > 0 else 0.0
-    smallest_mv, largest_mv = PLAUSIBLE_STEP_MV
+    smallest_mv, largest_mv = STEP_RANGE_MV
     if not smallest_mv <= abs(step_mv) <= largest_mv:
         raise RecordingError(
             f"{name}: lead {lead} is not calibrated: it states {physical.min:g} to "

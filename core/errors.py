@@ -25,6 +25,10 @@ class SamespotError(Exception):
 class RecordingError(SamespotError, ValueError):
     """A file cannot be used as a recording."""
 
+    def __init__(self, message: str) -> None:
+        # A file's name may hold bytes that are no text, line ends, and what a terminal acts upon.
+        super().__init__("".join(mark if mark.isprintable() else "?" for mark in message))
+
 
 class ComparisonError(SamespotError):
     """The recordings were read, but cannot be measured or compared."""

@@ -28,6 +28,8 @@ SAMPLING_RATE_RANGE_HZ = (100.0, 8000.0)
 # A larger value is no ECG but a wrong unit: an electrode's half-cell offset reaches a few
 # hundred mV (common practice, no source).
 LARGEST_PLAUSIBLE_MV = 1000.0
+# No converter is finer or coarser; beyond lies a gain that means something else.
+STEP_RANGE_MV = (1e-9, 1e3)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -88,6 +90,7 @@ def assemble_recording(
     if max(channel.samples_mv.size for channel in by_lead.values()) == 0:
         raise RecordingError(f"{name}: the file holds no samples. Export the recording again.")
     for channel in by_lead.values():
+        _refuse_impossible_step(name, channel)
         _refuse_impossible_voltage(name, channel)
     rate_hz = max(channel.sampling_rate_hz or sampling_rate_hz for channel in by_lead.values())
     samples = on_one_time_axis(by_lead, sampling_rate_hz, rate_hz)
@@ -145,7 +148,7 @@ def _frozen(columns: list[NDArray[np.float64]]) -> NDArray[np.float64]:
 
 
 def refuse_rate(name: str, rate_hz: float) -> None:
-    """Refuse a sampling rate at which no ECG is recorded.
+    """Refuse a rate that no ECG has.
 
     Raises
     ------
@@ -156,7 +159,8 @@ def refuse_rate(name: str, rate_hz: float) -> None:
     if not (math.isfinite(rate_hz) and low_hz <= rate_hz <= high_hz):
         raise RecordingError(
             f"{name}: the file states {rate_hz:g} samples a second; "
-            f"{low_hz:g} to {high_hz:g} can be read. Export the recording again at 500 Hz."
+            f"{low_hz:g} to {high_hz:g} can be read. Correct the rate or the unit "
+            "of time in the file, or export the recording again at 500 Hz."
         )
 
 
@@ -182,6 +186,17 @@ def refuse_missing_leads(name: str, held: Collection[str]) -> None:
         f"{name}: the file holds {holds}; a comparison needs V1 to V6 and at least two limb "
         "leads, recorded together. Choose a 12-lead recording."
     )
+
+
+def _refuse_impossible_step(name: str, channel: Channel) -> None:
+    step_mv = 1.0 / channel.counts_per_mv if channel.counts_per_mv else math.inf
+    smallest_mv, largest_mv = STEP_RANGE_MV
+    if not smallest_mv <= step_mv <= largest_mv:
+        raise RecordingError(
+            f"{name}: lead {channel.lead} is stored in steps of {step_mv:.3g} mV, which no "
+            "recorder has. The unit or the gain in the file is wrong; export it again with both "
+            "stated."
+        )
 
 
 def _refuse_impossible_voltage(name: str, channel: Channel) -> None:

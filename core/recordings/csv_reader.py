@@ -14,7 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
-from core.recordings.assemble import Channel, assemble_recording
+from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ, Channel, assemble_recording
 from core.recordings.comments import Comments
 from core.recordings.csv_header import (
     LeadColumn,
@@ -103,6 +103,12 @@ def read_csv(
 
 
 def _rate_hz(name: str, table: Table, comments: Comments, given_hz: float | None) -> float:
+    low_hz, high_hz = SAMPLING_RATE_RANGE_HZ
+    if given_hz is not None and not low_hz <= given_hz <= high_hz:
+        raise RecordingError(
+            f"{name}: its rate was given as {given_hz:g} samples a second; {low_hz:g} to "
+            f"{high_hz:g} can be read. Give the rate at which it was recorded."
+        )
     in_comment_hz = comments.sampling_rate_hz
     stated = [rate for rate in (in_comment_hz, given_hz) if rate is not None]
     time = table.header.time

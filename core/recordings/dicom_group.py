@@ -18,9 +18,17 @@ from core.recordings.assemble import Channel
 from core.recordings.lead_numbers import lead_of_code
 from core.recordings.leads import CHEST_LEADS, can_derive_limb_leads, lead_in_sentence
 from core.recordings.recording import Filters
+from core.recordings.shown import shown
 
 # UCUM codes; the writing with a micro sign is common in real files.
 MILLIVOLTS_PER_UNIT = {"uV": 1e-3, "µV": 1e-3, "μV": 1e-3, "mV": 1.0, "V": 1e3, "nV": 1e-6}
+NEEDED = (
+    "NumberOfWaveformChannels",
+    "NumberOfWaveformSamples",
+    "SamplingFrequency",
+    "WaveformBitsAllocated",
+    "WaveformData",
+)
 # Sample interpretations whose stored numbers are no linear measure of the voltage.
 COMPANDED = {"MB": "mu-law", "AB": "A-law"}
 
@@ -57,7 +65,8 @@ class Group:
     @property
     def duration_s(self) -> float:
         """How long it lasts."""
-        return self.n_samples / self.sampling_rate_hz
+        # A rate of zero is refused by name, later.
+        return self.n_samples / self.sampling_rate_hz if self.sampling_rate_hz > 0 else 0.0
 
     def simultaneous_with(self, other: Group) -> bool:
         """Whether its samples were taken at the same times as another's."""
@@ -76,15 +85,24 @@ class Group:
         ]
 
 
-def read_group(name: str, item: Any) -> Group:
+def read_group(name: str, item: Any, number: int, *, big_endian: bool) -> Group:
     """A multiplex group of the waveform sequence.
+
+    Parameters
+    ----------
+    item : pydicom.Dataset
+    number : int
+        Its place in the sequence, from 1.
+    big_endian : bool
+        Whether its samples were written with their high byte first.
 
     Raises
     ------
     RecordingError
-        If a lead's scaling is missing or the samples are companded.
+        If it does not say what it holds, is cut off, or lacks a lead's scaling.
     """
-    stored = _stored(name, item)
+    _refuse_incomplete(name, item, number)
+    stored = _stored(name, item, big_endian)
     definitions = item.ChannelDefinitionSequence
     unused_bits = stored.dtype.itemsize * 8 - _bits_stored(definitions, stored)
     padding = item.get("WaveformPaddingValue")
@@ -97,16 +115,18 @@ def read_group(name: str, item: Any) -> Group:
         unit_mv = _unit_mv(name, lead, definition)
         correction = _number(definition, "ChannelSensitivityCorrectionFactor", 1.0)
         step_mv = _number(definition, "ChannelSensitivity", 1.0) * correction * unit_mv
-        if not (np.isfinite(step_mv) and step_mv != 0):
+        baseline_mv = _number(definition, "ChannelBaseline", 0.0) * unit_mv
+        if not (np.isfinite(step_mv) and step_mv != 0 and np.isfinite(baseline_mv)):
             raise RecordingError(
-                f"{name}: lead {lead} states a sensitivity of zero. Export the file again."
+                f"{name}: lead {lead} states a sensitivity or a baseline of zero or of no number. "
+                "Export the file again, calibrated."
             )
         leads[lead] = _Scaling(
             stored=stored,
             column=column,
             sign=sign,
             step_mv=step_mv,
-            baseline_mv=_number(definition, "ChannelBaseline", 0.0) * unit_mv,
+            baseline_mv=baseline_mv,
             unused_bits=max(unused_bits, 0),
             padding=None if padding is None else _padding_number(padding, item),
         )
@@ -120,7 +140,25 @@ def read_group(name: str, item: Any) -> Group:
     )
 
 
-def _stored(name: str, item: Any) -> NDArray[Any]:
+def _refuse_incomplete(name: str, item: Any, number: int) -> None:
+    where = f"{name}: waveform group {number} of the DICOM object"
+    for keyword in NEEDED:
+        if item.get(keyword) in (None, ""):
+            words = " ".join(re.findall("[A-Z][a-z]+", keyword)).lower()
+            raise RecordingError(
+                f"{where} states no {words}. Export it again from where it is stored."
+            )
+    n_samples, n_channels = int(item.NumberOfWaveformSamples), int(item.NumberOfWaveformChannels)
+    needed = n_samples * n_channels * int(item.WaveformBitsAllocated) // 8
+    held = len(item.WaveformData)
+    if not 0 < needed <= held:
+        raise RecordingError(
+            f"{where} states {n_samples} samples of {n_channels} channels in {needed} bytes and "
+            f"holds {held}. Export it again from where it is stored."
+        )
+
+
+def _stored(name: str, item: Any, big_endian: bool) -> NDArray[Any]:
     """Samples as stored, shape (n_samples, n_columns); a view of the file's bytes."""
     from pydicom.waveforms.numpy_handler import WAVEFORM_DTYPES
 
@@ -131,6 +169,8 @@ def _stored(name: str, item: Any) -> NDArray[Any]:
             "not. Export the recording again with 16-bit samples."
         )
     form = np.dtype(WAVEFORM_DTYPES[(int(item.WaveformBitsAllocated), interpretation)])
+    if big_endian:
+        form = form.newbyteorder(">")
     shape = int(item.NumberOfWaveformSamples), int(item.NumberOfWaveformChannels)
     count = shape[0] * shape[1]
     return np.frombuffer(item.WaveformData, form, count=count).reshape(shape)
@@ -203,7 +243,7 @@ def _unit_mv(name: str, lead: str, definition: Any) -> float:
     code = str(units[0].get("CodeValue") or "") if units else ""
     factor = MILLIVOLTS_PER_UNIT.get(code)
     if factor is None:
-        stated = f"in the unit '{code}', which is no voltage" if code else "without a unit"
+        stated = f"in the unit '{shown(code)}', which is no voltage" if code else "without a unit"
         raise RecordingError(f"{name}: lead {lead} is stored {stated}. Export it in microvolts.")
     return factor
 

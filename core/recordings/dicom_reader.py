@@ -7,23 +7,23 @@ from __future__ import annotations
 
 import math
 from pathlib import Path
-from typing import Any
 
 from core.errors import RecordingError
 from core.recordings.assemble import assemble_recording, refuse_rate
+from core.recordings.dicom_file import is_big_endian, read_dataset_of
 from core.recordings.dicom_group import Group, read_group
 from core.recordings.dicom_subject import electrode_placement_of, recorded_at_of, subject_of
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.held import Held
 from core.recordings.leads import TWELVE_LEADS
+from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
+from core.recordings.shown import shown
 
 FORMAT_NAME = "DICOM"
 TWELVE_LEAD_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.1"
 GENERAL_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.2"
 AMBULATORY_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.3"
-# Two days of twelve leads at 250 Hz and 16 bits; the file is held in memory while it is read.
-LARGEST_FILE_BYTES = 1_100_000_000
 
 
 def looks_like_dicom(start: bytes) -> bool:
@@ -37,32 +37,38 @@ def open_dicom(path: Path) -> Held:
     Raises
     ------
     RecordingError
-        If the object is no ECG waveform, or no group holds twelve leads at once.
+        If the object is damaged, too large or no ECG waveform, or no group holds twelve leads at
+        once.
+    OSError
+        If the file cannot be opened.
     """
-    import pydicom
-
     name = path.name
-    n_bytes = path.stat().st_size
-    if n_bytes > LARGEST_FILE_BYTES:
-        raise RecordingError(
-            f"{name}: the file has {n_bytes / 1e9:.1f} GB, more than can be held in memory. "
-            "Export some hours of the recording."
-        )
     try:
-        dataset: Any = pydicom.dcmread(path)
-        groups = [read_group(name, item) for item in dataset.get("WaveformSequence") or []]
-        subject, recorded_at = subject_of(dataset), recorded_at_of(dataset)
-    except RecordingError:
+        with quietly():  # pydicom warns of much that it mends, or that is refused below
+            return _held(path)
+    except (RecordingError, OSError, MemoryError):
         raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
             f"{name}: the DICOM file is damaged. Export it again from where it is stored."
         ) from error
+
+
+def _held(path: Path) -> Held:
+    name = path.name
+    dataset = read_dataset_of(path)
+    items = dataset.get("WaveformSequence") or []
+    big_endian = is_big_endian(dataset)
+    groups = [
+        read_group(name, item, number, big_endian=big_endian)
+        for number, item in enumerate(items, 1)
+    ]
     if not groups:
-        kind = dataset.get("Modality") or "no modality"
+        kind = shown(str(dataset.get("Modality") or "")) or "no modality"
         raise RecordingError(
             f"{name}: this DICOM object ({kind}) holds no waveform. Choose the ECG waveform object."
         )
+    subject, recorded_at = subject_of(dataset), recorded_at_of(dataset)
     group = _rhythm_group(name, groups)
     rate_hz = group.sampling_rate_hz
     source = Source(name, FORMAT_NAME, sha256_of_files([path]))

@@ -19,6 +19,7 @@ from numpy.typing import NDArray
 
 from core.errors import RecordingError
 from core.recordings.assemble import (
+    STEP_RANGE_MV,
     Channel,
     assemble_recording,
     refuse_missing_leads,
@@ -37,6 +38,7 @@ from core.recordings.edf_subject import filters_of, recorded_at_of, subject_of, 
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.held import Held
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
+from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
 from core.recordings.shown import shown
 from core.recordings.units import MILLIVOLTS_PER_UNIT
@@ -47,8 +49,6 @@ if TYPE_CHECKING:
 # Records of an interrupted recording that follow each other within so many samples follow on:
 # their times are rounded to what the writer found worth writing.
 FOLLOWS_ON_SAMPLES = 0.5
-# No converter is finer or coarser; beyond lies a header that means something else.
-PLAUSIBLE_STEP_MV = (1e-9, 1e3)
 
 
 @dataclass(frozen=True, slots=True)
@@ -80,7 +80,7 @@ def open_edf(path: Path) -> Held:
     """
     name = path.name
     try:
-        with path.open("rb") as file:
+        with quietly(), path.open("rb") as file:
             layout = read_layout(name, file, path.stat().st_size)
             return _held(path, file, layout)
     except (RecordingError, OSError, MemoryError):
@@ -180,7 +180,7 @@ def _scale_mv(
         ) from error
     steps = digital.max - digital.min
     step_mv = (physical.max - physical.min) / steps * unit_mv if steps > 0 else 0.0
-    smallest_mv, largest_mv = PLAUSIBLE_STEP_MV
+    smallest_mv, largest_mv = STEP_RANGE_MV
     if not smallest_mv <= abs(step_mv) <= largest_mv:
         raise RecordingError(
             f"{name}: lead {lead} is not calibrated: it states {physical.min:g} to "

@@ -97,6 +97,10 @@ def _open(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Hel
         )
     if not chosen.exists():
         raise RecordingError(f"{chosen}: there is no such file. Check the name and the folder.")
+    if not chosen.is_file():  # a pipe or a device may never end
+        raise RecordingError(
+            f"{chosen.name}: this is a pipe or a device, not a file. Save the recording to a file."
+        )
     with chosen.open("rb") as file:
         start = file.read(4096)
     if not start:
@@ -104,11 +108,11 @@ def _open(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Hel
     for recognises, read in _READERS:
         if recognises(start):
             return read(chosen)
+    if looks_like_csv(start):
+        return held_in_memory(read_csv(chosen, unit=unit, sampling_rate_hz=sampling_rate_hz))
     beside = chosen.with_suffix(".hea")
     if beside.is_file():  # the signal file of a WFDB record was named
         return open_wfdb(beside)
-    if looks_like_csv(start):
-        return held_in_memory(read_csv(chosen, unit=unit, sampling_rate_hz=sampling_rate_hz))
     raise RecordingError(
         f"{chosen.name}: the content is not that of any readable format. Choose {READABLE}."
     )

@@ -13,19 +13,19 @@ from typing import Any
 import numpy as np
 
 from core.errors import RecordingError
-from core.recordings.assemble import Channel, assemble_recording, refuse_rate
+from core.recordings.assemble import Channel, assemble_recording
 from core.recordings.comments import Comments
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.held import Held, held_in_memory
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
+from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
+from core.recordings.shown import shown
 from core.recordings.units import MILLIVOLTS_PER_UNIT
+from core.recordings.wfdb_claims import parts_of, refuse_claims
+from core.recordings.wfdb_files import files_of_record
 
 FORMAT_NAME = "WFDB"
-# Formats that wfdb stores compressed (FLAC); in all others a sample takes a byte or more.
-FLAC_FORMATS = ("508", "516", "524")
-# A frame of a FLAC stream holds at most 65 535 samples in no fewer than 10 bytes.
-MOST_SAMPLES_A_FLAC_BYTE = 6554
 
 # First line of a header: record name (with its number of segments), number of signals, ...
 _RECORD_LINE = re.compile(rb"^[^\s/]+(?:/\d+)?[ \t]+\d+(?:[ \t]|$)")
@@ -45,33 +45,26 @@ def open_wfdb(header_path: Path) -> Held:
     Raises
     ------
     RecordingError
-        If the header cannot be read or a signal file is missing.
+        If the header cannot be read, a signal file is missing or shorter than the header says,
+        or it contradicts itself.
+    OSError
+        If a file cannot be opened.
     """
     # The wfdb package takes names, so the header must end in .hea.
     if header_path.suffix != ".hea":
         raise RecordingError(
             f"{header_path.name}: this is a WFDB header without the ending .hea. Rename it."
         )
-    import wfdb
-
+    paths = files_of_record(header_path)
     stem = header_path.with_suffix("")
-    try:
-        header: Any = wfdb.rdheader(str(stem), rd_segments=True)
-        n_signals, rate_hz = int(header.n_sig or 0), float(header.fs or 0.0)
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise RecordingError(
-            f"{header_path.name}: the WFDB header cannot be read ({_first_line(error)}). "
-            "Export the recording again."
-        ) from error
-    signal_paths = _signal_paths(header_path, header)
-    source = Source(stem.name, FORMAT_NAME, sha256_of_files([header_path, *signal_paths]))
+    header = _header(header_path, paths)
+    rate_hz = float(header.fs)
+    source = Source(stem.name, FORMAT_NAME, sha256_of_files(paths))
 
     def read(first: int, last: int | None, start_s: float) -> Recording:
-        record = _read(header_path, first, last)
-        channels = list(_channels(stem.name, record))
-        said = Comments(record.comments or [])
+        said = Comments(header.comments or [])
         return assemble_recording(
-            channels,
+            _read(header_path, first, last),
             sampling_rate_hz=rate_hz,
             source=source,
             subject=said.subject(header.base_datetime),
@@ -84,8 +77,6 @@ def open_wfdb(header_path: Path) -> Held:
     if not header.sig_len:  # the files' own lengths decide
         return held_in_memory(read(0, None, 0.0))
     n_samples = int(header.sig_len)
-    refuse_rate(stem.name, rate_hz)
-    _refuse_claims(header_path, header)
 
     def between(start_s: float, stop_s: float) -> Recording:
         first = min(round(start_s * rate_hz), n_samples - 1)
@@ -94,91 +85,69 @@ def open_wfdb(header_path: Path) -> Held:
     return Held(
         name=stem.name,
         duration_s=n_samples / rate_hz,
-        n_leads=max(n_signals, len(TWELVE_LEADS)),
+        n_leads=max(int(header.n_sig or 0), len(TWELVE_LEADS)),
         sampling_rate_hz=rate_hz * _most_samples_a_frame(header),
         between=between,
     )
 
 
-def _read(header_path: Path, first: int, last: int | None) -> Any:
-    """The samples from one up to another, by the wfdb package."""
+def _header(header_path: Path, paths: list[Path]) -> Any:
     import wfdb
 
     try:
-        record: Any = wfdb.rdrecord(
-            str(header_path.with_suffix("")),
-            sampfrom=first,
-            sampto=last,
-            physical=True,
-            smooth_frames=False,  # leads keep their own rates
-        )
+        with quietly():
+            header: Any = wfdb.rdheader(str(header_path.with_suffix("")), rd_segments=True)
+        refuse_claims(header_path.name, header, paths)
+    except (RecordingError, OSError, MemoryError):
+        raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise RecordingError(
-            f"{header_path.name}: the signals cannot be read as the header describes them "
-            f"({_first_line(error)}). Copy the whole record again, header and signal files."
-        ) from error
-    if not record.e_p_signal:
-        raise RecordingError(f"{header_path.name}: the record holds no signals. Choose another.")
-    return record
+        raise _unreadable(header_path) from error
+    return header
 
 
-def _signal_paths(header_path: Path, header: Any) -> list[Path]:
-    """Files that the header names, each once, in its order; all must lie beside the header.
+def _read(header_path: Path, first: int, last: int | None) -> list[Channel]:
+    """The leads from one sample up to another."""
+    import wfdb
 
-    The names are plain: the wfdb package refuses a header whose file names hold a path.
-    """
-    names: list[str] = []
-    for part in [header, *(getattr(header, "segments", None) or [])]:
-        names += getattr(part, "file_name", None) or []
-    paths = []
-    for name in dict.fromkeys(name for name in names if name and name != "~"):
-        path = header_path.with_name(name)
-        if not path.is_file():
-            raise RecordingError(
-                f"{header_path.name}: the signal file {name} is not beside the header. "
-                "Copy it into the same folder."
+    try:
+        with quietly():
+            record: Any = wfdb.rdrecord(
+                str(header_path.with_suffix("")),
+                sampfrom=first,
+                sampto=last,
+                physical=True,
+                smooth_frames=False,  # leads keep their own rates
             )
-        paths.append(path)
-    return paths
+        return list(_channels(header_path.name, record))
+    except (RecordingError, OSError, MemoryError):
+        raise
+    except Exception as error:  # as above
+        raise _unreadable(header_path) from error
 
 
-def _parts(header: Any) -> list[Any]:
-    """The record itself, or its segments; None stands for a gap."""
-    return getattr(header, "segments", None) or [header]
-
-
-def _most_samples_a_frame(header: Any) -> int:
-    return max(
-        (int(n) for part in _parts(header) if part for n in part.samps_per_frame or []), default=1
+def _unreadable(header_path: Path) -> RecordingError:
+    return RecordingError(
+        f"{header_path.name}: the signals cannot be read as the WFDB header describes them. "
+        "Copy the whole record again, header and signal files, or export it again."
     )
 
 
-def _refuse_claims(header_path: Path, header: Any) -> None:
-    """Refuse a header that states more samples than its signal files can hold."""
-    for part in _parts(header):
-        if part is None or not part.sig_len:
-            continue
-        for name, form in zip(part.file_name or [], part.fmt or [], strict=False):
-            held = header_path.with_name(name).stat().st_size if name != "~" else part.sig_len
-            most = held * (MOST_SAMPLES_A_FLAC_BYTE if form in FLAC_FORMATS else 1)
-            if part.sig_len > most:
-                raise RecordingError(
-                    f"{header_path.name}: the header states {part.sig_len} samples, and {name} "
-                    f"holds {held} bytes. Copy the whole record again, header and signal files."
-                )
-    in_gaps = header.sig_len - sum(part.sig_len or 0 for part in _parts(header) if part)
-    if in_gaps > header.sig_len / 2:
-        raise RecordingError(
-            f"{header_path.name}: more of the record is missing than was recorded. Export one "
-            "uninterrupted stretch of it."
-        )
+def _most_samples_a_frame(header: Any) -> int:
+    numbers = [number or 1 for part in parts_of(header) for number in part.samps_per_frame or []]
+    return max(numbers, default=1)
 
 
 def _channels(name: str, record: Any) -> Iterable[Channel]:
-    gains = record.adc_gain or [float("nan")] * record.n_sig
-    frames = record.samps_per_frame or [1] * record.n_sig
+    signals = record.e_p_signal or []
+    # Segments that state different ones leave none for the whole.
+    unstated = [None] * len(signals)
     for samples, label, unit, gain, a_frame in zip(
-        record.e_p_signal, record.sig_name, record.units, gains, frames, strict=True
+        signals,
+        record.sig_name,
+        record.units or unstated,
+        record.adc_gain or unstated,
+        record.samps_per_frame or unstated,
+        strict=True,
     ):
         found = lead_of_label(label or "")
         if found is None:
@@ -186,9 +155,14 @@ def _channels(name: str, record: Any) -> Iterable[Channel]:
         lead, sign = found
         factor = MILLIVOLTS_PER_UNIT.get((unit or "").strip().lower())
         if factor is None:
+            stated = (
+                f"in the unit '{shown(unit)}', which is no voltage"
+                if unit
+                else "without a unit, or in several"
+            )
             raise RecordingError(
-                f"{name}: lead {lead} is in the unit '{unit}', which is no voltage. "
-                "Write the record in mV."
+                f"{name}: lead {lead} is {stated}. "
+                "Export the record in mV, with the unit in its header."
             )
         samples_mv = np.asarray(samples, dtype=np.float64)
         if factor != 1.0 or sign != 1.0:
@@ -196,8 +170,3 @@ def _channels(name: str, record: Any) -> Iterable[Channel]:
         step = abs(float(gain)) / factor if gain else float("nan")
         counts_per_mv = step if np.isfinite(step) and step > 0 else 1000.0
         yield Channel(lead, samples_mv, counts_per_mv, float(record.fs) * (a_frame or 1))
-
-
-def _first_line(error: Exception) -> str:
-    text = str(error).strip().splitlines()
-    return text[0].rstrip(".")[:160] if text else type(error).__name__

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from copy import deepcopy
 from datetime import datetime
 from pathlib import Path
 
@@ -9,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 from pydicom.dataset import Dataset, FileMetaDataset
 from pydicom.sequence import Sequence
-from pydicom.uid import ExplicitVRLittleEndian, generate_uid
+from pydicom.uid import UID, ExplicitVRBigEndian, ExplicitVRLittleEndian, generate_uid
 
 TWELVE_LEAD_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.1"
 # MDC codes of the leads, DICOM CID 3001.
@@ -75,6 +76,7 @@ def write_dicom(
     sex: str,
     age_years: int,
     recorded_at: datetime,
+    syntax: UID = ExplicitVRLittleEndian,
 ) -> None:
     """Write an object with the given waveform groups; the same input gives the same bytes."""
     dataset = Dataset()
@@ -89,7 +91,11 @@ def write_dicom(
     dataset.StudyDate = dataset.ContentDate = recorded_at.strftime("%Y%m%d")
     dataset.StudyTime = dataset.ContentTime = recorded_at.strftime("%H%M%S")
     dataset.AcquisitionDateTime = recorded_at.strftime("%Y%m%d%H%M%S")
+    if syntax == ExplicitVRBigEndian:  # pydicom writes samples as they are
+        groups = [deepcopy(group) for group in groups]
+        for group in groups:
+            group.WaveformData = np.frombuffer(group.WaveformData, "<i2").astype(">i2").tobytes()
     dataset.WaveformSequence = Sequence(groups)
     dataset.file_meta = FileMetaDataset()
-    dataset.file_meta.TransferSyntaxUID = ExplicitVRLittleEndian
+    dataset.file_meta.TransferSyntaxUID = syntax
     dataset.save_as(path, enforce_file_format=True)

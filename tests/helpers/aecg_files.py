@@ -4,6 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
+import numpy as np
+from numpy.typing import NDArray
+
+NAMES = ("I", "II", "V1", "V2", "V3", "V4", "V5", "V6")
+# 0.12 s at 500 Hz, as `plain` writes them.
+COUNTS = np.random.default_rng(1).integers(-400, 400, (8, 60))
 HL7 = "urn:hl7-org:v3"
 
 
@@ -66,3 +72,45 @@ def annotated_ecg(*parts: str, person: str = PERSON, head: str = "") -> bytes:
         f'<AnnotatedECG xmlns="{HL7}" xmlns:xsi="http://www.w3.org/2001/XMLSchema-instance">'
         f"{person}{''.join(parts)}</AnnotatedECG>"
     ).encode()
+
+
+def leads(counts: NDArray[np.int64] = COUNTS, **options: str) -> dict[str, str]:
+    return {name: digits(row, **options) for name, row in zip(NAMES, counts, strict=True)}
+
+
+def plain(*, time: str | None = None, **changed: str) -> bytes:
+    """A whole file; *changed* are values of leads by their name, None to leave one out."""
+    made = {name: value for name, value in (leads() | changed).items() if value is not None}
+    return annotated_ecg(series(sequence_set(made, time)))
+
+
+def relative(*, step: str = "2", unit: str = "ms", head: str = "0") -> str:
+    """Times counted from a start that is not stated: a list of physical quantities."""
+    return sequence(
+        "TIME_RELATIVE",
+        f'<value xsi:type="GLIST_PQ"><head value="{head}" unit="{unit}"/>'
+        f'<increment value="{step}" unit="{unit}"/></value>',
+    )
+
+
+def derived(code: str, n: int = 600) -> str:
+    """A series derived from the one around it, as the standard nests it."""
+    inside = sequence_set(leads(np.resize(COUNTS, (8, n))), relative())
+    return f'<derivation><derivedSeries><code code="{code}"/>{inside}</derivedSeries></derivation>'
+
+
+def halves(first: str, second: str, *, around: str = "") -> bytes:
+    """Limb leads in one set, chest leads in another, each with its own times."""
+    made = leads()
+    limb = sequence_set({name: made[name] for name in NAMES[:2]}, first)
+    chest = sequence_set({name: made[name] for name in NAMES[2:]}, second)
+    one = series(limb, chest)
+    if around:
+        one = one.replace('<low value="20311112224005"/>', around)
+    return annotated_ecg(one)
+
+
+def with_derived_beat(content: bytes) -> bytes:
+    """The same document with a short beat derived from its series."""
+    beat = derived("REPRESENTATIVE_BEAT", n=40).encode()
+    return content.replace(b"</series>", beat + b"</series>")

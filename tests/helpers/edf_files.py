@@ -16,6 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 EDF, BDF = b"0       ", b"\xffBIOSEMI"
+EIGHT = ["I", "II", "V1", "V2", "V3", "V4", "V5", "V6"]
 
 
 @dataclass
@@ -42,6 +43,15 @@ class Annotations:
 def starts(times_s: Sequence[object]) -> Annotations:
     """Annotations that say no more than when each record starts: ``+12.5 <20> <20> <0>``."""
     return Annotations([f"+{time}".encode() + b"\x14\x14\0" for time in times_s])
+
+
+def counts(n_records: int = 4, a_record: int = 500, seed: int = 2) -> NDArray[np.int64]:
+    """Eight leads of whole numbers, shape (8, n_records, a_record)."""
+    return np.random.default_rng(seed).integers(-20000, 20000, (8, n_records, a_record))
+
+
+def signals(values: NDArray[np.int64], leads: list[str] = EIGHT, **said: object) -> list[Signal]:
+    return [Signal(lead, records, **said) for lead, records in zip(leads, values, strict=True)]
 
 
 def edf_bytes(
@@ -75,6 +85,20 @@ def edf_bytes(
         _record(signal, number, size) for number in range(held[0]) for signal in signals
     )
     return header + body
+
+
+def small_file(version: bytes, reserved: str) -> bytes:
+    """Eight leads in three data records, the third of them late where the file is EDF+D."""
+    kind = "EDF" if version == EDF else "BDF"
+    told = starts([0, 1, 2.5])
+    told.label = f"{kind} Annotations"
+    return edf_bytes(
+        [*signals(counts(3, 120)), told],
+        version=version,
+        reserved=reserved.replace("EDF", kind),
+        patient="P-9 F 09-MAR-1950 Invented_Ash",
+        recording="Startdate 12-NOV-2031 X X X",
+    )
 
 
 def _field(value: object, width: int) -> bytes:

@@ -18,7 +18,7 @@ from core.recordings.aecg.digits import Digits, number_of
 from core.recordings.aecg.document import Node
 from core.recordings.aecg.errors import EXPORT_AGAIN, AecgError
 from core.recordings.aecg.times import moment_of
-from core.recordings.assemble import Channel
+from core.recordings.assemble import STEP_RANGE_MV, Channel
 from core.recordings.csv_times import decimals_of
 from core.recordings.leads import (
     CHEST_LEADS,
@@ -37,8 +37,6 @@ _PER_SECOND = {"s": 1.0, "ms": 1e3, "us": 1e6, "µs": 1e6, "μs": 1e6}
 _EPOCH = datetime(1970, 1, 1)
 # Sets begin together if their starts agree to so many samples: heads are rounded by writers.
 _SAME_START_SAMPLES = 0.5
-# No converter is finer or coarser; beyond lies a scale that means something else.
-_PLAUSIBLE_STEP_MV = (1e-9, 1e3)
 # Samples written with decimals: copies are kept no finer than 1 nV, which 32 bits hold up to 2 V.
 _FINEST_COUNTS_PER_MV = 1e6
 _VALUES_FOR_DECIMALS = 10_000
@@ -203,7 +201,7 @@ def _channel(lead: LeadSequence) -> Channel:
     if scale is None:
         raise AecgError(f"does not state the scale of lead {name}")
     step_mv = _millivolts(scale, f"the scale of lead {name}")
-    smallest_mv, largest_mv = _PLAUSIBLE_STEP_MV
+    smallest_mv, largest_mv = STEP_RANGE_MV
     if not smallest_mv <= abs(step_mv) <= largest_mv:
         raise AecgError(f"states {step_mv:g} mV as the scale of lead {name}, which no recorder has")
     values = digits.take()

@@ -15,6 +15,8 @@ from core.errors import RecordingError
 SECTION_HEADER_BYTES = 16
 POINTER_BYTES = 10
 MOST_SECTIONS = 64
+# 42 minutes of twelve leads at 500 Hz in 16 bits are 30 MB.
+LARGEST_BYTES = 50_000_000
 _PROTOCOL_BYTE = 9
 _RECORD_HEADER_BYTES = 6
 
@@ -57,12 +59,16 @@ def read_sections(name: str, record: bytes) -> dict[int, Section]:
         raise _damaged(name, "its checksum does not agree with its content")
     pointers = _section_at(name, record, 0, _RECORD_HEADER_BYTES)
     found: dict[int, Section] = {}
+    n_bytes = 0
     for at in range(0, len(pointers.content) - POINTER_BYTES + 1, POINTER_BYTES):
         number, section_length, index = struct.unpack_from("<HII", pointers.content, at)
         if number == 0 or section_length == 0 or number in found:
             continue
         if len(found) >= MOST_SECTIONS:
             raise _damaged(name, "it points to more sections than there are")
+        n_bytes += section_length
+        if n_bytes > length:
+            raise _damaged(name, "its sections lie upon each other")
         found[number] = _section_at(name, record, number, index - 1)
     return found
 

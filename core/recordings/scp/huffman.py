@@ -15,6 +15,8 @@ from numpy.typing import NDArray
 DEFAULT_TABLE_MARK = 19999
 LONGEST_PREFIX = 16
 LONGEST_CODE = 32
+# A table takes up to half a megabyte when it is spread out, and eleven bytes in the file.
+MOST_TABLES = 32
 _ALL_64 = (1 << 64) - 1
 
 
@@ -91,6 +93,8 @@ def read_tables(content: bytes) -> list[Table]:
     (n_tables,) = struct.unpack_from("<H", content)
     if n_tables == DEFAULT_TABLE_MARK:
         return [DEFAULT_TABLE]
+    if n_tables > MOST_TABLES:
+        raise HuffmanError(f"{n_tables} tables")
     tables, at = [], 2
     for _ in range(n_tables):
         if at + 2 > len(content):
@@ -123,7 +127,7 @@ def decode(data: bytes, n_values: int, tables: list[Table]) -> NDArray[np.int64]
         raise HuffmanError(f"{n_values} samples in {len(data)} bytes")
     padded = data + bytes(8)
     values = np.empty(n_values, dtype=np.int64)
-    table, at, done = tables[0], 0, 0
+    table, at, done, n_switches = tables[0], 0, 0, 0
     while done < n_values:
         # The next 57 to 64 bits, from the top.
         first = at >> 3
@@ -138,6 +142,9 @@ def decode(data: bytes, n_values: int, tables: list[Table]) -> NDArray[np.int64]
         if not code.is_value:
             if not 1 <= code.value <= len(tables):
                 raise HuffmanError("a switch to a table that isn't there")
+            n_switches += 1
+            if n_switches > n_values:
+                raise HuffmanError("more switches of the table than samples")
             table = tables[code.value - 1]
             continue
         extra = code.whole_bits - code.prefix_bits

@@ -20,6 +20,10 @@ LEAD_DEFINITIONS, BEAT_LOCATIONS, REFERENCE_BEAT, RHYTHM, LONG_RHYTHM = 3, 4, 5,
 HUFFMAN_TABLES = 2
 MOST_LEADS = 85
 LONGEST_RECORD_SAMPLES = 100_000_000
+# Decoded one by one: five minutes of twelve leads at 500 Hz take about a second.
+MOST_COMPRESSED_SAMPLES = 2_000_000
+# As many in those five minutes as no heart makes.
+MOST_BEATS = 2000
 # Leads recorded one group after another span so many times the longest of them at most.
 FARTHEST_APART = 12
 
@@ -35,8 +39,8 @@ class Signals:
     Attributes
     ----------
     lead_numbers : tuple of int
-    values : list of ndarray of int
-        One array a lead, in steps.
+    values : list of ndarray
+        One array a lead, in steps. Doubles, because damaged differences add up past any integer.
     starts : tuple of int
         Sample of the record that each array begins at, from 0.
     step_mv : tuple of float
@@ -44,7 +48,7 @@ class Signals:
     """
 
     lead_numbers: tuple[int, ...]
-    values: list[NDArray[np.int64]]
+    values: list[NDArray[np.float64]]
     starts: tuple[int, ...]
     step_mv: tuple[float, ...]
     sampling_rate_hz: float
@@ -98,6 +102,9 @@ def _rhythm(sections: dict[int, Section]) -> Signals:
     tables = None
     if HUFFMAN_TABLES in sections:
         tables = read_tables(sections[HUFFMAN_TABLES].content)
+        n_samples = sum(lead.n_samples for lead in leads)
+        if n_samples > MOST_COMPRESSED_SAMPLES:
+            raise SignalError(f"it states {n_samples} compressed samples, too many to decode")
     coded = _coded(sections[RHYTHM].content, len(leads))
     if coded.bimodal:
         raise SignalError("its rhythm is thinned out between the beats (bimodal compression)")
@@ -152,15 +159,15 @@ def _coded(content: bytes, n_leads: int) -> _Coded:
     return _Coded(step_nv, interval_us, differences, bool(bimodal & 1), data)
 
 
-def _decoded(data: bytes, n_samples: int, tables: list[Table] | None) -> NDArray[np.int64]:
+def _decoded(data: bytes, n_samples: int, tables: list[Table] | None) -> NDArray[np.float64]:
     if tables is not None:
-        return decode(data, n_samples, tables)
+        return decode(data, n_samples, tables).astype(np.float64)
     if n_samples > len(data) // 2:
         raise SignalError(f"{n_samples} samples in {len(data)} bytes")
-    return np.frombuffer(data, "<i2", n_samples).astype(np.int64)
+    return np.frombuffer(data, "<i2", n_samples).astype(np.float64)
 
 
-def _undo_differences(values: NDArray[np.int64], order: int) -> NDArray[np.int64]:
+def _undo_differences(values: NDArray[np.float64], order: int) -> NDArray[np.float64]:
     """Samples of their differences; the first *order* values are samples themselves."""
     if order == 1 or (order == 2 and values.size <= 2):
         return np.cumsum(values) if order == 1 else values
@@ -173,10 +180,10 @@ def _undo_differences(values: NDArray[np.int64], order: int) -> NDArray[np.int64
 def _with_reference_beat(
     sections: dict[int, Section],
     leads: list[_Lead],
-    residual: list[NDArray[np.int64]],
+    residual: list[NDArray[np.float64]],
     coded: _Coded,
     tables: list[Table] | None,
-) -> tuple[list[NDArray[np.int64]], int]:
+) -> tuple[list[NDArray[np.float64]], int]:
     """The rhythm with the reference beat put back, and its step in nV."""
     for needed in (BEAT_LOCATIONS, REFERENCE_BEAT):
         if needed not in sections:
@@ -191,16 +198,26 @@ def _with_reference_beat(
         _undo_differences(_decoded(data, n_beat, tables), beat.differences) * beat.step_nv
         for data in beat.data
     ]
+    if n_beats > MOST_BEATS:
+        raise SignalError(f"it states {n_beats} beats")
     whole = [values * coded.step_nv for values in residual]
+    n_put_back = [0] * len(leads)
     for position in range(n_beats):
         kind, first, at, last = struct.unpack_from("<HIII", locations, 6 + 14 * position)
         if kind != 0:
             continue
-        for lead, values, shape in zip(leads, whole, shapes, strict=True):
-            sample = np.arange(max(first, lead.first), min(last, lead.last) + 1)
-            inside = sample - at + fiducial - 1
-            held = (inside >= 0) & (inside < shape.size)
-            values[sample[held] - lead.first] += shape[inside[held]]
+        for place, (lead, values, shape) in enumerate(zip(leads, whole, shapes, strict=True)):
+            # Sample of the record that the beat's own first sample falls on.
+            begin = at - fiducial + 1
+            low = max(first, lead.first, begin)
+            high = min(last, lead.last, begin + shape.size - 1)
+            if high < low:
+                continue
+            n_put_back[place] += high - low + 1
+            if n_put_back[place] > 2 * values.size:
+                raise SignalError("its beats lie upon each other")
+            there = slice(low - lead.first, high - lead.first + 1)
+            values[there] += shape[low - begin : high - begin + 1]
     return whole, 1
 
 
@@ -222,7 +239,7 @@ def _long_rhythm(content: bytes) -> Signals:
     table = np.frombuffer(content, "<i2", n_samples * n_leads, start).reshape(n_samples, n_leads)
     return Signals(
         lead_numbers=tuple(numbers),
-        values=[table[:, column].astype(np.int64) for column in range(n_leads)],
+        values=[table[:, column].astype(np.float64) for column in range(n_leads)],
         starts=(0,) * n_leads,
         step_mv=tuple(step * 1e-6 for step in steps_nv),
         sampling_rate_hz=float(rate_hz),

@@ -21,33 +21,13 @@ from core.recordings.leads import TWELVE_LEADS
 from core.recordings.recording import Filters
 from tests.helpers import aecg_files as aecg
 from tests.helpers.aecg_damage import damaged
+from tests.helpers.aecg_files import COUNTS, NAMES, derived, halves, leads, plain, relative
 
 DATA = Path(__file__).resolve().parents[3].parent / "shared" / "data"
-NAMES = ("I", "II", "V1", "V2", "V3", "V4", "V5", "V6")
 COLUMNS = [0, 1, *range(6, 12)]
-COUNTS = np.random.default_rng(1).integers(-400, 400, (8, 60))
 STEP_MV = 0.0025
 SLOWEST_S = 2.0
 FUZZED = 300
-
-
-def leads(counts: np.ndarray = COUNTS, **options: str) -> dict[str, str]:
-    return {name: aecg.digits(row, **options) for name, row in zip(NAMES, counts, strict=True)}
-
-
-def plain(*, time: str | None = None, **changed: str) -> bytes:
-    """A whole file; *changed* are values of leads by their name, None to leave one out."""
-    made = {name: value for name, value in (leads() | changed).items() if value is not None}
-    return aecg.annotated_ecg(aecg.series(aecg.sequence_set(made, time)))
-
-
-def relative(*, step: str = "2", unit: str = "ms", head: str = "0") -> str:
-    """Times counted from a start that is not stated: a list of physical quantities."""
-    return aecg.sequence(
-        "TIME_RELATIVE",
-        f'<value xsi:type="GLIST_PQ"><head value="{head}" unit="{unit}"/>'
-        f'<increment value="{step}" unit="{unit}"/></value>',
-    )
 
 
 def read(folder: Path, content: bytes | str) -> Recording:
@@ -63,7 +43,7 @@ def refusal(folder: Path, content: bytes | str) -> str:
     said = str(refused.value)
     assert said.startswith("invented.xml: ")
     assert "\n" not in said
-    assert re.search(r"[.;] (export|choose|save|cut) .*\.$", said.lower()), (
+    assert re.search(r"[.;] (correct|export|choose|save|cut) .*\.$", said.lower()), (
         said
     )  # what would mend it
     return said
@@ -287,12 +267,6 @@ def test_the_longest_original_rhythm_is_taken(tmp_path):
     assert read(tmp_path, content).n_samples == 200
 
 
-def derived(code: str, n: int = 600) -> str:
-    """A series derived from the one around it, as the standard nests it."""
-    inside = aecg.sequence_set(leads(np.resize(COUNTS, (8, n))), relative())
-    return f'<derivation><derivedSeries><code code="{code}"/>{inside}</derivedSeries></derivation>'
-
-
 @pytest.mark.parametrize("code", ["REPRESENTATIVE_BEAT", "RHYTHM"])
 def test_what_is_nested_as_derived_is_never_taken(tmp_path, code):
     """Not even where it calls itself a rhythm and is longer."""
@@ -312,17 +286,6 @@ def test_a_file_without_an_original_rhythm_says_what_it_has(tmp_path):
     around = f"<component><series>{derived('RHYTHM')}</series></component>"
     assert "derived from another" in refusal(tmp_path, aecg.annotated_ecg(around))
     assert "series: none" in refusal(tmp_path, aecg.annotated_ecg())
-
-
-def halves(first: str, second: str, *, around: str = "") -> bytes:
-    """Limb leads in one set, chest leads in another, each with its own times."""
-    made = leads()
-    limb = aecg.sequence_set({name: made[name] for name in NAMES[:2]}, first)
-    chest = aecg.sequence_set({name: made[name] for name in NAMES[2:]}, second)
-    one = aecg.series(limb, chest)
-    if around:
-        one = one.replace('<low value="20311112224005"/>', around)
-    return aecg.annotated_ecg(one)
 
 
 @pytest.mark.parametrize(
@@ -633,10 +596,7 @@ def test_a_file_that_is_not_there_is_an_error_of_the_system(tmp_path):
 
 def test_damaged_files_are_read_or_refused_in_one_line(tmp_path):
     """Two sets, a beat derived from them, a person; damaged in bytes or in what they say."""
-    content = halves(aecg.times(), aecg.times())
-    content = content.replace(
-        b"</series>", derived("REPRESENTATIVE_BEAT", n=40).encode() + b"</series>"
-    )
+    content = aecg.with_derived_beat(halves(aecg.times(), aecg.times()))
     assert read(tmp_path, content).n_samples == 60
     outcomes = {"read": 0, "refused": 0}
     for seed in range(FUZZED):

@@ -17,36 +17,8 @@ from core.recordings import csv_table
 from core.recordings.csv_reader import looks_like_csv, read_csv
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.recording import Filters
+from tests.helpers.csv_files import LEADS, RATE, in_mv, small_tables, table, values_uv, with_time
 from tests.helpers.mutate import mutated
-
-LEADS = list(TWELVE_LEADS)
-RATE = "# sampling_rate_hz: 500\n"
-
-
-def values_uv(n: int = 300, seed: int = 4) -> np.ndarray:
-    """Whole microvolts, shape (n, 12)."""
-    return np.random.default_rng(seed).integers(-3000, 3000, (n, 12))
-
-
-def table(
-    values: np.ndarray,
-    headings: list[str],
-    *,
-    delimiter: str = ",",
-    form: str = "%.3f",
-    above: str = "",
-    decimal: str = ".",
-) -> str:
-    """A table as numpy writes it."""
-    text = io.StringIO()
-    np.savetxt(text, values, fmt=form, delimiter=delimiter)
-    rows = text.getvalue().replace(".", decimal)
-    return f"{above}{delimiter.join(headings)}\n{rows}"
-
-
-def in_mv(n: int = 300, **said: object) -> str:
-    headings = [f"{lead} (mV)" for lead in LEADS]
-    return table(values_uv(n) / 1000, headings, **{"above": RATE, **said})
 
 
 def write(folder: Path, content: str | bytes) -> Path:
@@ -153,12 +125,6 @@ def test_a_unit_that_is_no_voltage_is_refused(tmp_path):
     headings[7] = "V2 (mmHg)"
     text = table(values_uv() / 1000, headings, above=RATE)
     assert "lead V2 is in the unit 'mmHg'" in refusal(tmp_path, text)
-
-
-def with_time(times: np.ndarray, heading: str, *, form: str = "%.6g", n: int = 300, **said) -> str:
-    headings = [heading, *(f"{lead} (mV)" for lead in LEADS)]
-    values = np.column_stack([times, values_uv(n) / 1000])
-    return table(values, headings, form=[form, *["%.3f"] * 12], **said)  # type: ignore[arg-type]
 
 
 @pytest.mark.parametrize(
@@ -408,16 +374,7 @@ def test_the_content_tells_it():
     assert looks_like_csv("# name: Åse …\nI,II,III\n".encode())
 
 
-@pytest.mark.parametrize(
-    "content",
-    [
-        in_mv(40).encode(),
-        with_time(np.arange(40) / 500, "time (ms)", n=40, delimiter=";", decimal=",").encode(),
-        ("# patient id: P\n# recorded at: 2031-11-12\n# unit: mV\n" + in_mv(40)).encode("utf-16"),
-        table(values_uv(40), LEADS, form='"%d"', above=RATE + "# unit: uV\n").encode(),
-    ],
-    ids=["commas", "semicolons", "utf-16", "quoted"],
-)
+@pytest.mark.parametrize("content", small_tables().values(), ids=small_tables())
 def test_nothing_but_a_refusal_comes_out_of_a_mutated_table(tmp_path, content):
     rng = np.random.default_rng(21)
     for _ in range(80):

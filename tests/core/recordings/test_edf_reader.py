@@ -16,12 +16,21 @@ from core.recordings.edf_reader import looks_like_edf, open_edf
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.recording import Filters
 from tests.helpers import edf_files
-from tests.helpers.edf_files import BDF, Annotations, Signal, edf_bytes, starts
+from tests.helpers.edf_files import (
+    BDF,
+    EIGHT,
+    Annotations,
+    Signal,
+    counts,
+    edf_bytes,
+    signals,
+    small_file,
+    starts,
+)
 from tests.helpers.mutate import mutated
 
 DATA = Path(__file__).parents[4] / "shared" / "data"
 LEADS = list(TWELVE_LEADS)
-EIGHT = ["I", "II", *LEADS[6:]]
 STEP_MV = 1e-4  # of the hand-built files: 6553.5 uV in 65535 steps
 
 
@@ -30,15 +39,6 @@ def waves(n: int = 2000, n_leads: int = 12, seed: int = 1) -> np.ndarray:
     rng = np.random.default_rng(seed)
     at = np.arange(n) / 500
     return np.array([np.sin(at * (3 + k)) + rng.uniform(-0.9, 0.9, n) for k in range(n_leads)])
-
-
-def counts(n_records: int = 4, a_record: int = 500, seed: int = 2) -> np.ndarray:
-    """Eight leads of whole numbers, shape (8, n_records, a_record)."""
-    return np.random.default_rng(seed).integers(-20000, 20000, (8, n_records, a_record))
-
-
-def signals(values: np.ndarray, leads: list[str] = EIGHT, **said: object) -> list[Signal]:
-    return [Signal(lead, records, **said) for lead, records in zip(leads, values, strict=True)]
 
 
 def write(folder: Path, content: bytes) -> Path:
@@ -427,16 +427,7 @@ def test_an_unfinished_file_is_read_as_far_as_it_goes(tmp_path):
 @pytest.mark.parametrize("version", [edf_files.EDF, BDF])
 def test_nothing_but_a_refusal_comes_out_of_a_mutated_file(tmp_path, version, reserved):
     rng = np.random.default_rng(20)
-    kind = "EDF" if version == edf_files.EDF else "BDF"
-    told = starts([0, 1, 2.5])
-    told.label = f"{kind} Annotations"
-    content = edf_bytes(
-        [*signals(counts(3, 120)), told],
-        version=version,
-        reserved=reserved.replace("EDF", kind),
-        patient="P-9 F 09-MAR-1950 Invented_Ash",
-        recording="Startdate 12-NOV-2031 X X X",
-    )
+    content = small_file(version, reserved)
     for _ in range(60):
         path = write(tmp_path, mutated(content, rng))
         with contextlib.suppress(RecordingError):

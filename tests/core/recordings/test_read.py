@@ -37,7 +37,7 @@ def test_a_text_file_renamed(tmp_path):
 def test_a_header_without_its_signal_file(tmp_path):
     write_record(tmp_path, "lone", np.zeros((1000, 1)), ["II"])
     (tmp_path / "lone.dat").unlink()
-    assert "lone.dat is not beside" in refusal(tmp_path / "lone.hea")
+    assert "signal file lone.dat, which is not beside" in refusal(tmp_path / "lone.hea")
 
 
 def test_a_record_of_one_lead(tmp_path):

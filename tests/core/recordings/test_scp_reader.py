@@ -12,42 +12,16 @@ from core import RecordingError
 from core.recordings.scp.container import looks_like_scp
 from core.recordings.scp.reader import read_scp
 from tests.helpers import scp_files as scp
+from tests.helpers.scp_files import CODERS, INTERVAL_US, NUMBERS, STEP_NV, leads, sections
 
 FORMATS = Path(__file__).resolve().parents[3].parent / "shared" / "data" / "formats"
-NUMBERS = (1, 2, 3, 4, 5, 6, 7, 8)  # I, II, V1 to V6
-STEP_NV, INTERVAL_US = 2500, 2000
 COLUMNS = [0, 1, *range(6, 12)]
-
-
-def leads(n: int = 700, seed: int = 3) -> np.ndarray:
-    """Eight leads of smooth waves in steps, with jumps that need the long codes."""
-    rng = np.random.default_rng(seed)
-    time = np.arange(n)
-    waves = [150 * np.sin(time / (7.0 + k)) + 400 * (time % 190 == 40 + k) for k in range(8)]
-    return np.rint(np.array(waves) + rng.normal(0, 2, (8, n))).astype(int)
-
-
-def sections(values: np.ndarray, *, order: int = 0, coder: scp.Coder | None = None) -> dict:
-    n = values.shape[1]
-    found = {
-        1: scp.tags(),
-        3: scp.lead_definitions([(number, 1, n) for number in NUMBERS]),
-        6: scp.coded_leads(
-            values, step_nv=STEP_NV, interval_us=INTERVAL_US, order=order, coder=coder
-        ),
-    }
-    if coder is not None:
-        found[2] = coder.table
-    return found
 
 
 def write(folder: Path, record: bytes) -> Path:
     path = folder / "invented.scp"
     path.write_bytes(record)
     return path
-
-
-CODERS = {"plain": lambda: None, "default table": scp.default_coder, "own table": scp.own_coder}
 
 
 @pytest.mark.parametrize("coder", list(CODERS))
@@ -79,13 +53,14 @@ def test_the_reference_beat_is_put_back(tmp_path, coder):
         if kind == 0:
             sample = np.arange(first, last + 1)
             truth_nv[:, sample - 1] += shape[:, sample - at + fiducial - 1] * fine_nv
-    made = sections(values, order=2, coder=CODERS[coder]())
-    made[3] = scp.lead_definitions(
-        [(number, 1, values.shape[1]) for number in NUMBERS], reference_beat_subtracted=True
-    )
-    made[4] = scp.beat_locations(n_beat * INTERVAL_US // 1000, fiducial, beats)
-    made[5] = scp.coded_leads(
-        shape, step_nv=fine_nv, interval_us=INTERVAL_US, order=1, coder=CODERS[coder]()
+    made = scp.with_reference_beat(
+        sections(values, order=2, coder=CODERS[coder]()),
+        shape,
+        beats,
+        n=values.shape[1],
+        fiducial=fiducial,
+        step_nv=fine_nv,
+        coder=CODERS[coder](),
     )
     recording = read_scp(write(tmp_path, scp.record(made)))
     np.testing.assert_allclose(

@@ -77,9 +77,12 @@ def test_header_comments_tell_of_the_person():
     ("spoilt", "reason"),
     [
         (lambda text: text.replace("16 1000", "16 0/nan"), "."),
-        (lambda text: text.replace("bad.dat", "../bad.dat"), "cannot be read"),
-        (lambda text: text.replace("bad.dat", "/etc/bad.dat"), "cannot be read"),
-        (lambda text: text.replace("bad.dat", "other.dat"), "other.dat is not beside"),
+        (lambda text: text.replace("bad.dat", "../bad.dat"), "'../bad.dat'; only plain names"),
+        (lambda text: text.replace("bad.dat", "/etc/bad.dat"), "'/etc/bad.dat'; only plain names"),
+        (
+            lambda text: text.replace("bad.dat", "other.dat"),
+            "line 2 .* other.dat, which is not beside",
+        ),
         (lambda text: text.replace(" 2000 ", " 99999 ").replace(" 2000\n", " 99999\n"), "copy"),
         (lambda text: text.replace("mV", "mmHg"), "no voltage"),
         (lambda text: text.replace("bad 12 500", "bad 12 3"), "samples a second"),

@@ -23,6 +23,7 @@ from core.recordings.shown import shown
 # UCUM codes; the writing with a micro sign is common in real files.
 MILLIVOLTS_PER_UNIT = {"uV": 1e-3, "µV": 1e-3, "μV": 1e-3, "mV": 1.0, "V": 1e3, "nV": 1e-6}
 NEEDED = (
+    "ChannelDefinitionSequence",
     "NumberOfWaveformChannels",
     "NumberOfWaveformSamples",
     "SamplingFrequency",
@@ -150,6 +151,12 @@ def _refuse_incomplete(name: str, item: Any, number: int) -> None:
             )
     n_samples, n_channels = int(item.NumberOfWaveformSamples), int(item.NumberOfWaveformChannels)
     needed = n_samples * n_channels * int(item.WaveformBitsAllocated) // 8
+    described = len(item.ChannelDefinitionSequence)
+    if described > n_channels:
+        raise RecordingError(
+            f"{where} describes {described} channels and holds {n_channels}. Export it again from "
+            "where it is stored."
+        )
     held = len(item.WaveformData)
     if not 0 < needed <= held:
         raise RecordingError(

@@ -227,7 +227,8 @@ def of_lead_i(keyword: str, value: object) -> Callable[[Dataset], object]:
     [
         (of_group("NumberOfWaveformSamples", 4_000_000_000), "samples of 12 channels in"),
         (of_group("NumberOfWaveformChannels", 65_535), "samples of 65535 channels in"),
-        (of_group("NumberOfWaveformChannels", 0), "samples of 0 channels in"),
+        (of_group("NumberOfWaveformChannels", 0), "describes 12 channels and holds 0"),
+        (of_group("NumberOfWaveformChannels", 4), "describes 12 channels and holds 4"),
         (of_group("NumberOfWaveformSamples", 121), "states 121 samples of"),
         (of_group("SamplingFrequency", "0"), "states 0 samples a second"),
         (of_group("SamplingFrequency", "1e9"), "states 1e+09 samples a second"),

@@ -8,7 +8,7 @@ from core.comparison.laid import lay_beats
 from core.comparison.witness import chest_interchange_between, limb_interchange_between
 from core.measures.report import RecordingReport, measure
 from core.placement.moved import usable_independent
-from core.placement.own_evidence import log_evidence
+from core.placement.own_evidence import rise_by_undoing
 from core.quality.interchange import Interchange, with_interchange_undone
 from core.settings import Settings
 from core.torso.ensemble import load_ensemble
@@ -30,7 +30,7 @@ def put_right(
     if limb is not None:
         ensemble = load_ensemble()
         rise_earlier, rise_later = (
-            log_evidence(report, ensemble, undoing=one) - log_evidence(report, ensemble)
+            rise_by_undoing(report, ensemble, (one,))[0]
             for report, one in ((earlier, limb.reversed), (later, limb))
         )
         if rise_earlier > rise_later:

@@ -4,7 +4,13 @@ from __future__ import annotations
 
 from core.comparison.compare import compare
 from core.comparison.results import Comparison
-from core.errors import ComparisonError, NotComparable, NotEnoughBeats, RecordingError
+from core.errors import (
+    ComparisonError,
+    NotComparable,
+    NotEnoughBeats,
+    RecordingError,
+    TableIncomplete,
+)
 from core.measures.report import RecordingReport
 from core.placement.checked import measure_and_check as measure
 from core.placement.moved import ElectrodeMove, move_electrodes
@@ -23,6 +29,7 @@ __all__ = [
     "RecordingReport",
     "Settings",
     "Spread",
+    "TableIncomplete",
     "compare",
     "measure",
     "move_electrodes",

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import argparse
 
-from core import Recording, read_recording
+from app.command_line.failures import CommandFailed
+from core import Recording, TableIncomplete, read_recording
 
 RECORDING_HELP = "a file, or a WFDB record name"
+STATED_BY = {"unit": "--unit mV", "rate": "--rate-hz 500"}
 
 
 def add_recording_options(parser: argparse.ArgumentParser) -> None:
@@ -56,9 +58,13 @@ def read_pair(options: argparse.Namespace) -> tuple[Recording, Recording]:
 
 
 def _read(path: str, options: argparse.Namespace, stretch_s: list[float] | None) -> Recording:
-    return read_recording(
-        path,
-        unit=options.unit,
-        sampling_rate_hz=options.rate_hz,
-        stretch_s=None if stretch_s is None else (stretch_s[0], stretch_s[1]),
-    )
+    try:
+        return read_recording(
+            path,
+            unit=options.unit,
+            sampling_rate_hz=options.rate_hz,
+            stretch_s=None if stretch_s is None else (stretch_s[0], stretch_s[1]),
+        )
+    except TableIncomplete as error:
+        named = " ".join(STATED_BY[what] for what in error.missing)
+        raise CommandFailed(error.stating_it(f"with {named}")) from error

@@ -5,14 +5,15 @@ from __future__ import annotations
 import logging
 import threading
 import traceback
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 from PySide6.QtCore import QObject, QRunnable, QThreadPool, Signal
 
-from core import Comparison, Settings, compare, read_recording
-from core.errors import NotComparable, SamespotError, Stopped
+from app.state.stated import Stated
+from core import Comparison, Recording, Settings, compare, read_recording
+from core.errors import NotComparable, SamespotError, Stopped, TableIncomplete
 
 log = logging.getLogger(__name__)
 
@@ -28,6 +29,12 @@ class CompareRequest:
     settings: Settings
     # Of two files dropped at once, nobody said which is the earlier.
     order_by_time: bool = False
+    stated: Mapping[Path, Stated] = field(default_factory=dict)
+
+    def read(self, path: Path) -> Recording:
+        """Read one of the two, by what was stated of it."""
+        stated = self.stated.get(path, Stated())
+        return read_recording(path, unit=stated.unit, sampling_rate_hz=stated.sampling_rate_hz)
 
 
 def compare_files(
@@ -38,8 +45,8 @@ def compare_files(
     """Read both recordings and compare them."""
     report_progress(0.0, "reading the recordings")
     return compare(
-        read_recording(request.earlier),
-        read_recording(request.later),
+        request.read(request.earlier),
+        request.read(request.later),
         request.settings,
         report_progress=report_progress,
         should_stop=should_stop,
@@ -48,7 +55,7 @@ def compare_files(
 
 def in_order(request: CompareRequest) -> CompareRequest:
     """The request with the older recording as the earlier, where both say when they were made."""
-    first, second = (read_recording(path).recorded_at for path in (request.earlier, request.later))
+    first, second = (request.read(path).recorded_at for path in (request.earlier, request.later))
     if first is None or second is None or first <= second:
         return request
     return replace(request, earlier=request.later, later=request.earlier)
@@ -64,6 +71,7 @@ class CompareRunner(QObject):
     ordered = Signal(object, object)  # paths of the earlier and the later, once told by time
     finished = Signal(object)
     failed = Signal(str, tuple)  # the reason, and the stops that may be lifted
+    unstated = Signal(object)  # the TableIncomplete of the one that does not say all
     _came = Signal(object, str, object)
 
     def __init__(self, work: Work = compare_files) -> None:
@@ -103,6 +111,8 @@ class CompareRunner(QObject):
         self._current = None
         if kind == "result":
             self.finished.emit(content)
+        elif kind == "unstated":
+            self.unstated.emit(content)
         else:
             self.failed.emit(*content)  # type: ignore[misc]
 
@@ -129,6 +139,8 @@ class _Task(QRunnable):
             result = self._work(request, self._report, self.stop.is_set)
         except Stopped:
             return
+        except TableIncomplete as error:
+            self._tell(self, "unstated", error)
         except NotComparable as error:
             self._tell(self, "failure", (str(error), error.stops))
         except SamespotError as error:

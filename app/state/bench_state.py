@@ -7,6 +7,7 @@ from pathlib import Path
 
 from PySide6.QtCore import QObject, Signal
 
+from app.state.stated import Stated
 from core.comparison.judge import BY_WEIGHT, STEADY
 from core.comparison.results import Comparison
 from core.recordings.leads import TWELVE_LEADS
@@ -34,6 +35,7 @@ class BenchState(QObject):
         self.phase = Phase.EMPTY
         self.earlier: Path | None = None
         self.later: Path | None = None
+        self.stated: dict[Path, Stated] = {}
         self.comparison: Comparison | None = None
         self.refusal = ""
         self.liftable_stops: tuple[str, ...] = ()
@@ -52,12 +54,27 @@ class BenchState(QObject):
         return self.earlier is not None and self.later is not None
 
     def choose(self, earlier: Path | None, later: Path | None) -> None:
-        """Choose recordings; a comparison of others is put away."""
+        """Choose recordings; a comparison of others is put away.
+
+        What was stated of a table holds as long as it is one of the two.
+        """
         self.earlier, self.later = earlier, later
+        self.stated = {
+            path: stated for path, stated in self.stated.items() if path in (earlier, later)
+        }
         self.comparison = None
         self.refusal, self.liftable_stops = "", ()
         self._enter(Phase.EMPTY)
         self.pair_changed.emit()
+
+    def remember(self, table: Path, stated: Stated) -> None:
+        """The reader said what one of the two does not say of itself."""
+        self.stated[table] = stated
+
+    def forget(self, *opened: Path) -> None:
+        """Files that are opened anew are asked anew."""
+        for path in opened:
+            self.stated.pop(path, None)
 
     def set_order(self, earlier: Path, later: Path) -> None:
         """Which of the two chosen recordings is the earlier has been told by their times."""

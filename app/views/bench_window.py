@@ -33,6 +33,7 @@ from app.views.theme import BODY, current_palette
 from app.views.verdict_panel import VerdictPanel
 from core import Settings
 from core.comparison.results import Comparison
+from core.errors import TableIncomplete
 from core.version import PROGRAM_NAME, program_version
 from core.wording.caution import CAUTION, KNOWN_LIMITS
 from core.wording.judgements import MARKS, MEANINGS, WORDS
@@ -49,12 +50,14 @@ class BenchWindow(QMainWindow):
         self.state: BenchState = BenchState()
         self.runner = runner or CompareRunner()
         self._order_by_time = False
+        self._lifted_stops: tuple[str, ...] = ()
         self.actions_list = Actions(self)
         self._lay_out()
         self.runner.progressed.connect(self.state.advance)
         self.runner.ordered.connect(self.state.set_order)
         self.runner.finished.connect(self.state.finish)
         self.runner.failed.connect(self.state.refuse)
+        self.runner.unstated.connect(self.ask_unstated)
         self.verdict.cancelled.connect(self.stop_comparing)
         self.verdict.lift_wanted.connect(self.lift_stops)
         self.start_view.pair_wanted.connect(self.open_pair)
@@ -128,17 +131,29 @@ class BenchWindow(QMainWindow):
 
     def open_pair(self, earlier: Path, later: Path, *, order_by_time: bool = False) -> None:
         """Choose a pair and compare it."""
-        self.state.choose(Path(earlier), Path(later))
+        earlier, later = Path(earlier), Path(later)
+        self.state.forget(earlier, later)
+        self.state.choose(earlier, later)
         self._compare(order_by_time=order_by_time)
 
     def _compare(self, *, order_by_time: bool = False, lifted_stops: tuple[str, ...] = ()) -> None:
         earlier, later = self.state.earlier, self.state.later
         if earlier is None or later is None:
             return
-        self._order_by_time = order_by_time
+        self._order_by_time, self._lifted_stops = order_by_time, lifted_stops
         self.state.begin()
         settings = Settings(lifted_stops=lifted_stops)
-        self.runner.start(CompareRequest(earlier, later, settings, order_by_time))
+        self.runner.start(
+            CompareRequest(earlier, later, settings, order_by_time, dict(self.state.stated))
+        )
+
+    def ask_unstated(self, error: TableIncomplete) -> None:
+        """Ask for what a table does not say, and compare again; else it stays refused."""
+        self.state.refuse(str(error))
+        stated = dialogs.ask_unstated(self, error)
+        if stated is not None:
+            self.state.remember(error.path, stated)
+            self._compare(order_by_time=self._order_by_time, lifted_stops=self._lifted_stops)
 
     def lift_stops(self) -> None:
         """Compare in spite of what stopped this pair, this once."""
@@ -159,10 +174,14 @@ class BenchWindow(QMainWindow):
         """Ask for the earlier or the later recording; compare once both are there."""
         path = dialogs.ask_recording(self, f"Open the {role} recording")
         if path is not None:
-            chosen = {"earlier": self.state.earlier, "later": self.state.later, role: path}
-            self.runner.cancel()
-            self.state.choose(chosen["earlier"], chosen["later"])
-            self._compare()
+            self._open_one(role, path)
+
+    def _open_one(self, role: str, path: Path) -> None:
+        chosen = {"earlier": self.state.earlier, "later": self.state.later, role: path}
+        self.runner.cancel()
+        self.state.forget(path)
+        self.state.choose(chosen["earlier"], chosen["later"])
+        self._compare()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         """Take files of this machine."""
@@ -186,12 +205,8 @@ class BenchWindow(QMainWindow):
             )
         elif len(paths) == 2:
             self.open_pair(*paths, order_by_time=True)
-        elif len(paths) == 1 and self.state.earlier is None:
-            self.state.choose(paths[0], self.state.later)
-            self._compare()
         elif len(paths) == 1:
-            self.state.choose(self.state.earlier, paths[0])
-            self._compare()
+            self._open_one("earlier" if self.state.earlier is None else "later", paths[0])
 
     def export_pdf(self) -> None:
         """Write the comparison report."""

@@ -4,7 +4,11 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from PySide6.QtWidgets import QFileDialog, QMessageBox, QWidget
+from PySide6.QtWidgets import QDialog, QFileDialog, QMessageBox, QWidget
+
+from app.state.stated import Stated
+from app.views.table_dialog import TableDialog
+from core.errors import TableIncomplete
 
 RECORDINGS = "Recordings (*.hea *.dcm *.edf *.bdf *.scp *.xml *.csv *.tsv);;All files (*)"
 
@@ -19,6 +23,14 @@ def ask_file_to_write(parent: QWidget, title: str, suggestion: str, kind: str) -
     """Ask where to write."""
     name, _ = QFileDialog.getSaveFileName(parent, title, suggestion, kind)
     return Path(name) if name else None
+
+
+def ask_unstated(parent: QWidget, error: TableIncomplete) -> Stated | None:
+    """Ask for what a table does not say of itself."""
+    dialog = TableDialog(parent, error.path.name, error.missing)
+    answered = dialog.exec() == QDialog.DialogCode.Accepted
+    dialog.deleteLater()
+    return dialog.stated() if answered else None
 
 
 def tell(parent: QWidget, title: str, text: str) -> None:

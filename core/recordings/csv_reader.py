@@ -8,13 +8,19 @@ Neither is guessed.
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
 
-from core.errors import RecordingError
-from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ, Channel, assemble_recording
+from core.errors import RecordingError, TableIncomplete, Unstated
+from core.recordings.assemble import (
+    SAMPLING_RATE_RANGE_HZ,
+    Channel,
+    assemble_recording,
+    refuse_missing_leads,
+)
 from core.recordings.comments import Comments
 from core.recordings.csv_header import (
     LeadColumn,
@@ -28,6 +34,7 @@ from core.recordings.fingerprint import sha256_of_files
 from core.recordings.leads import LIMB_LEADS, can_derive_limb_leads
 from core.recordings.recording import Recording, Source
 from core.recordings.shown import shown
+from core.wording import notices as say
 
 FORMAT_NAME = "CSV"
 # A table shows only how many decimals were written. Copies of it are kept no coarser than 1 µV
@@ -66,10 +73,11 @@ def read_csv(
 
     Raises
     ------
+    TableIncomplete
+        If a unit or the rate is neither in the file nor given.
     RecordingError
-        If a unit or the rate is neither in the file nor given, or is both and differs; if the
-        time column is uneven, or a cell is no number; if the leads are not those of a 12-lead
-        ECG.
+        If it is both and differs; if the time column is uneven, or a cell is no number; if the
+        leads are not those of a 12-lead ECG.
     OSError
         If the file cannot be opened.
     """
@@ -77,17 +85,7 @@ def read_csv(
     try:
         with path.open(encoding=encoding_of(path)) as stream:
             table = read_table(name, stream)
-        comments = Comments(table.comments)
-        rate_hz = _rate_hz(name, table, comments, sampling_rate_hz)
-        return assemble_recording(
-            _channels(name, table, comments, unit),
-            sampling_rate_hz=rate_hz,
-            source=Source(name, FORMAT_NAME, sha256_of_files([path])),
-            subject=comments.subject(comments.recorded_at),
-            recorded_at=comments.recorded_at,
-            filters=comments.filters,
-            electrode_placement=comments.electrode_placement,
-        )
+        return _recording(path, table, unit, sampling_rate_hz)
     except (RecordingError, OSError, MemoryError):
         raise
     except UnicodeError as error:
@@ -100,6 +98,47 @@ def read_csv(
             f"{name}: the table cannot be read ({type(error).__name__}). "
             "Export it again, one row a sample."
         ) from error
+
+
+def _recording(path: Path, table: Table, unit: str | None, given_hz: float | None) -> Recording:
+    name, comments = path.name, Comments(table.comments)
+    columns = _measured(table, comments)
+    # What a caller is asked to state must not be asked in vain.
+    refuse_missing_leads(name, {column.lead for column in columns})
+    unitless = [column.lead for column in columns if not _stated_unit(column, table, comments)]
+    no_rate = comments.sampling_rate_hz is None and table.header.time is None
+    _refuse_incomplete(path, unitless if unit is None else [], no_rate=no_rate and given_hz is None)
+    rate_hz = _rate_hz(name, table, comments, given_hz)
+    recording = assemble_recording(
+        _channels(name, table, comments, columns, unit),
+        sampling_rate_hz=rate_hz,
+        source=Source(name, FORMAT_NAME, sha256_of_files([path])),
+        subject=comments.subject(comments.recorded_at),
+        recorded_at=comments.recorded_at,
+        filters=comments.filters,
+        electrode_placement=comments.electrode_placement,
+    )
+    stated = [f"the unit {unit}"] if unitless else []
+    stated += [f"{rate_hz:g} samples a second"] if no_rate else []
+    if not stated:
+        return recording
+    return replace(recording, notices=(*recording.notices, say.stated_by_user(stated)))
+
+
+def _refuse_incomplete(path: Path, unitless: list[str], *, no_rate: bool) -> None:
+    """Refuse a table for what is neither in it nor given, all of it at once."""
+    missing: list[Unstated] = []
+    lacks, mends = [], []
+    if unitless:
+        missing.append("unit")
+        lacks.append(f"does not say in which unit lead {unitless[0]} is")
+        mends.append(f"write the unit into the header row, as in '{unitless[0]} (mV)'")
+    if no_rate:
+        missing.append("rate")
+        lacks.append("has no time column and states no sampling rate")
+        mends.append("add a line '# sampling_rate_hz: 500' above the header row")
+    if missing:
+        raise TableIncomplete(path, tuple(missing), ", ".join(lacks), " and ".join(mends))
 
 
 def _rate_hz(name: str, table: Table, comments: Comments, given_hz: float | None) -> float:
@@ -123,13 +162,8 @@ def _rate_hz(name: str, table: Table, comments: Comments, given_hz: float | None
                 "rate, with empty cells where samples are missing and no rounding of the times."
             ) from error
     if not stated and shown_hz is None:
-        if time is not None:
-            raise RecordingError(
-                f"{name}: the table has fewer than two rows. Export the recording again."
-            )
         raise RecordingError(
-            f"{name}: the file has no time column and states no sampling rate. Add a line "
-            "'# sampling_rate_hz: 500' above the header row, or state it with --rate-hz 500."
+            f"{name}: the table has fewer than two rows. Export the recording again."
         )
     claims = [*stated, *([] if shown_hz is None else [shown_hz])]
     if not all(agree(claims[0], claim) for claim in claims):
@@ -141,10 +175,16 @@ def _rate_hz(name: str, table: Table, comments: Comments, given_hz: float | None
     return claims[0]
 
 
-def _channels(name: str, table: Table, comments: Comments, given_unit: str | None) -> list[Channel]:
+def _channels(
+    name: str,
+    table: Table,
+    comments: Comments,
+    columns: list[LeadColumn],
+    given_unit: str | None,
+) -> list[Channel]:
     steps = _stated_steps(table, comments)
     channels = []
-    for column in _measured(table, comments):
+    for column in columns:
         unit_mv = _unit_mv(name, column, _stated_unit(column, table, comments), given_unit)
         values = table.columns.pop(column.place)
         counts_per_mv = steps.get(column.lead) or _counts_per_mv(values, unit_mv)
@@ -176,13 +216,7 @@ def _unit_mv(name: str, column: LeadColumn, stated: str | None, given: str | Non
         raise RecordingError(
             f"{name}: '{shown(given)}' is no unit of voltage. Give mV, uV, V or nV."
         )
-    if stated is None:
-        if given_mv is None:
-            raise RecordingError(
-                f"{name}: the file does not say in which unit lead {column.lead} is. Write the "
-                f"unit into the header row, as in '{column.lead} (mV)', or state it with --unit mV."
-            )
-        return given_mv
+    stated = stated or given or ""
     stated_mv = millivolts_per(stated)
     if stated_mv is None:
         raise RecordingError(

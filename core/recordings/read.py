@@ -66,6 +66,8 @@ def read_recording(
 
     Raises
     ------
+    TableIncomplete
+        If a table states no unit or no rate, and none is given.
     RecordingError
         With one line that says what is wrong, which file, and what would mend it.
     """

@@ -40,6 +40,16 @@ def stretch_asked(start_s: float, stop_s: float, duration_s: float) -> Notice:
     )
 
 
+def stated_by_user(facts: Sequence[str]) -> Notice:
+    """A table leaves out its unit or its rate."""
+    return Notice(
+        "stated-by-user",
+        "info",
+        f"Not in the file, but stated by the user: {joined(facts)}. What is measured is right only "
+        "if that is.",
+    )
+
+
 def beats_left_out(reasons: Sequence[str], n_beats: int) -> Notice:
     """Some beats are not in the representative beat."""
     counted = [f"{reasons.count(reason)} {reason}" for reason in dict.fromkeys(reasons)]

@@ -5,8 +5,8 @@ from __future__ import annotations
 import pytest
 
 from app.command_line.main import main
-from core import read_recording
 from core.shipped_files import samples_folder
+from tests.helpers.tables import bare_table
 
 RECORD = samples_folder() / "raised-earlier"
 
@@ -14,11 +14,7 @@ RECORD = samples_folder() / "raised-earlier"
 @pytest.fixture(scope="module")
 def table(tmp_path_factory):
     """The sample in mV, with neither a unit nor times."""
-    recording = read_recording(RECORD)
-    path = tmp_path_factory.mktemp("table") / "table.csv"
-    rows = (",".join(f"{value:.5f}" for value in row) for row in recording.signal_mv)
-    path.write_text("\n".join([",".join(recording.leads), *rows]) + "\n")
-    return str(path)
+    return str(bare_table(tmp_path_factory.mktemp("table"), RECORD.name))
 
 
 def commands(table, folder) -> list[list[str]]:
@@ -35,9 +31,10 @@ def test_unit_and_rate_are_taken_by_every_command(table, tmp_path, capsys):
 @pytest.mark.parametrize(
     ("options", "part"),
     [
-        ([], "table.csv"),
-        (["--unit", "mV"], "rate"),
-        (["--rate-hz", "500"], "unit"),
+        ([], "raised-earlier.csv"),
+        ([], "state both with --unit mV --rate-hz 500."),
+        (["--unit", "mV"], "state it with --rate-hz 500."),
+        (["--rate-hz", "500"], "state it with --unit mV."),
         (["--unit", "mmHg", "--rate-hz", "500"], "mmHg"),
         (["--unit", "mV", "--rate-hz", "nan"], "nan"),
         (["--unit", "mV", "--rate-hz", "0"], "0"),

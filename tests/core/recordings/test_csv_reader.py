@@ -111,7 +111,7 @@ def test_a_unit_in_a_comment(tmp_path, line):
 def test_a_unit_that_the_caller_states(tmp_path):
     text = table(values_uv(), LEADS, form="%d", above=RATE)
     assert_is_the_table(read(tmp_path, text, unit="uV"))
-    assert "'I (mV)', or state it with --unit mV" in refusal(tmp_path, text)
+    assert "'I (mV)', or state it when it is opened" in refusal(tmp_path, text)
     assert "'mm' is no unit of voltage" in refusal(tmp_path, text, unit="mm")
 
 

@@ -34,7 +34,12 @@ class CompareRequest:
     def read(self, path: Path) -> Recording:
         """Read one of the two, by what was stated of it."""
         stated = self.stated.get(path, Stated())
-        return read_recording(path, unit=stated.unit, sampling_rate_hz=stated.sampling_rate_hz)
+        return read_recording(
+            path,
+            unit=stated.unit,
+            sampling_rate_hz=stated.sampling_rate_hz,
+            stretch_s=stated.stretch_s,
+        )
 
 
 def compare_files(

@@ -68,8 +68,8 @@ class BenchState(QObject):
         self.pair_changed.emit()
 
     def remember(self, table: Path, stated: Stated) -> None:
-        """The reader said what one of the two does not say of itself."""
-        self.stated[table] = stated
+        """The reader said what one of the two does not say of itself, or what is wanted of it."""
+        self.stated[table] = self.stated.get(table, Stated()).joined(stated)
 
     def forget(self, *opened: Path) -> None:
         """Files that are opened anew are asked anew."""

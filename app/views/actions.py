@@ -47,6 +47,20 @@ ENTRIES = (
         lambda window: window.state.has_pair,
     ),
     Entry(
+        "stretch.earlier",
+        "&File",
+        "Use a s&tretch of the earlier recording…",
+        lambda window: window.choose_stretch("earlier"),
+        lambda window: window.state.earlier is not None,
+    ),
+    Entry(
+        "stretch.later",
+        "&File",
+        "Use a stretch of the later recor&ding…",
+        lambda window: window.choose_stretch("later"),
+        lambda window: window.state.later is not None,
+    ),
+    Entry(
         "export.pdf",
         "&File",
         "Write the comparison &report…",

@@ -170,6 +170,16 @@ class BenchWindow(QMainWindow):
             self.state.choose(self.state.later, self.state.earlier)
             self._compare()
 
+    def choose_stretch(self, role: str) -> None:
+        """Ask which part of the earlier or the later recording to use, and compare again."""
+        path: Path | None = getattr(self.state, role)
+        if path is None:
+            return
+        stated = dialogs.ask_stretch(self, path.name)
+        if stated is not None:
+            self.state.remember(path, stated)
+            self._compare(lifted_stops=self._lifted_stops)
+
     def choose_recording(self, role: str) -> None:
         """Ask for the earlier or the later recording; compare once both are there."""
         path = dialogs.ask_recording(self, f"Open the {role} recording")

@@ -7,6 +7,7 @@ from pathlib import Path
 from PySide6.QtWidgets import QDialog, QFileDialog, QMessageBox, QWidget
 
 from app.state.stated import Stated
+from app.views.stretch_dialog import StretchDialog
 from app.views.table_dialog import TableDialog
 from core.errors import TableIncomplete
 
@@ -28,6 +29,14 @@ def ask_file_to_write(parent: QWidget, title: str, suggestion: str, kind: str) -
 def ask_unstated(parent: QWidget, error: TableIncomplete) -> Stated | None:
     """Ask for what a table does not say of itself."""
     dialog = TableDialog(parent, error.path.name, error.missing)
+    answered = dialog.exec() == QDialog.DialogCode.Accepted
+    dialog.deleteLater()
+    return dialog.stated() if answered else None
+
+
+def ask_stretch(parent: QWidget, name: str) -> Stated | None:
+    """Ask which part of a recording to use."""
+    dialog = StretchDialog(parent, name)
     answered = dialog.exec() == QDialog.DialogCode.Accepted
     dialog.deleteLater()
     return dialog.stated() if answered else None

@@ -11,6 +11,7 @@ from PySide6.QtWidgets import (
     QDialogButtonBox,
     QGridLayout,
     QHBoxLayout,
+    QLabel,
     QLineEdit,
     QRadioButton,
     QVBoxLayout,
@@ -35,15 +36,8 @@ class TableDialog(QDialog):
         super().__init__(parent)
         self.setWindowTitle("Not stated in the table")
         self.setFixedWidth(WIDTH)
-        self.setStyleSheet(_visible_outlines())
-        heading = label(size=HEADING, bold=True)
-        # Names of one person's files differ at their ends.
-        heading.setText(
-            heading.fontMetrics().elidedText(
-                name, Qt.TextElideMode.ElideMiddle, WIDTH - 2 * MARGIN - 4
-            )
-        )
-        heading.setToolTip(plain_tool_tip(name))
+        self.setStyleSheet(visible_outlines())
+        heading = file_heading(name)
         self._missing = missing
         self.units = QButtonGroup(self)
         self.rate = QLineEdit()
@@ -105,7 +99,17 @@ class TableDialog(QDialog):
         self.read.setEnabled(all(answered[what] is not None for what in self._missing))
 
 
-def _visible_outlines() -> str:
+def file_heading(name: str) -> QLabel:
+    """A file's name over a dialog; the middle of a long one is left out."""
+    heading = label(size=HEADING, bold=True)
+    # Names of one person's files differ at their ends.
+    room = WIDTH - 2 * MARGIN - 4
+    heading.setText(heading.fontMetrics().elidedText(name, Qt.TextElideMode.ElideMiddle, room))
+    heading.setToolTip(plain_tool_tip(name))
+    return heading
+
+
+def visible_outlines() -> str:
     """The platform's own outlines hardly stand out from a dark ground."""
     palette = current_palette()
     return (

@@ -5,12 +5,13 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+from core.recordings import cleanest, held
 from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ
-from core.recordings.cleanest import LONGEST_WHOLE_S as LONGEST_WHOLE_S
-from core.recordings.held import SHORTEST_STRETCH_S as SHORTEST_STRETCH_S
 
 UNITS = ("mV", "µV", "V", "nV")
 LOWEST_RATE_HZ, HIGHEST_RATE_HZ = SAMPLING_RATE_RANGE_HZ
+LONGEST_WHOLE_S, USUAL_STRETCH_S = cleanest.LONGEST_WHOLE_S, cleanest.STRETCH_S
+SHORTEST_STRETCH_S = held.SHORTEST_STRETCH_S
 
 
 @dataclass(frozen=True, slots=True)

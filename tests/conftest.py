@@ -12,6 +12,7 @@ from pydicom.data import get_testdata_file
 
 from core import Comparison, Recording, compare, read_recording
 from core.shipped_files import samples_folder
+from tests.helpers.further import with_further
 
 
 def pytest_collection_modifyitems(items: list[pytest.Item]) -> None:
@@ -49,6 +50,16 @@ def steady() -> Comparison:
 def medial() -> Comparison:
     """V5 and V6 not lateral enough in the later tracing."""
     return compare(*_sample_pair("medial", ".dcm"))
+
+
+@pytest.fixture(scope="session")
+def further() -> Comparison:
+    """The raised pair with further leads: V3R and X in one recording only, V9 flat in the later."""
+    earlier, later = _sample_pair("raised")
+    return compare(
+        with_further(earlier, "V4R", "V7", "V9", "X"),
+        with_further(later, "V3R", "V4R", "V7", "V9", times=1.2, flat=("V9",)),
+    )
 
 
 @pytest.fixture(scope="session")

@@ -3,33 +3,23 @@
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QPainter, QPen
 
-from app.drawing.pen import Style, draw_curve, draw_mark, draw_text, fill_between, text_width
+from app.drawing.lead_curves import LeadBands, curves_of, shown_times_ms
+from app.drawing.pen import Style, draw_curve, draw_text, fill_between, text_width
 from app.drawing.scale import Scale, voltage_range
 from core.comparison.results import Comparison
-from core.recordings.leads import TWELVE_LEADS
-from core.wording.judgements import WORDS
 from core.wording.numbers import NARROW, signed
 
 SMALL_SQUARE_MS, SMALL_SQUARE_MV = 40.0, 0.1
 CELL_EVERY = 5  # small squares to a line of a cell's grid
-GRID_OF_CELLS = (
-    f"grid {SMALL_SQUARE_MS * CELL_EVERY / 1000:g} s × {SMALL_SQUARE_MV * CELL_EVERY:g} mV"
-)
 LEAST_HEIGHT_MV = 0.9
 TIME_STEP_MS = 200.0
 MOST_LEVELS = 7
 RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
 CENTRE = Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignVCenter
-
-
-def shown_times_ms(comparison: Comparison) -> tuple[float, float]:
-    """Stretch of the beat that is shown: a little before P to a little after T."""
-    f, time = comparison.earlier.points.fiducials, comparison.laid.time_ms
-    first = time[f.p_onset] - 40.0 if f.p_onset is not None else time[f.qrs_onset] - 120.0
-    return max(float(first), float(time[0])), min(float(time[f.t_offset]) + 60.0, float(time[-1]))
 
 
 def draw_grid(painter: QPainter, scale: Scale, style: Style, *, every: int = 1) -> None:
@@ -84,117 +74,60 @@ def draw_overlay(
     painter: QPainter, rect: QRectF, comparison: Comparison, lead: str, style: Style, *, every: int
 ) -> Scale:
     """Both beats, with the noise and reach bands around the earlier one."""
-    row = TWELVE_LEADS.index(lead)
-    laid, bands, palette = comparison.laid, comparison.bands, style.palette
-    first, last = shown_times_ms(comparison)
-    shown = (laid.time_ms >= first) & (laid.time_ms <= last)
-    time = laid.time_ms[shown]
-    earlier, later = laid.earlier_mv[row, shown], laid.later_mv[row, shown]
-    reach = (earlier + bands.reach_low_mv[row, shown], earlier + bands.reach_high_mv[row, shown])
-    low, high = voltage_range(earlier, later, *reach, least_mv=LEAST_HEIGHT_MV)
-    scale = Scale(rect, first, last, low, high)
+    curves, palette = curves_of(comparison, lead), style.palette
+    earlier, later, bands = curves.earlier_mv, curves.later_mv, curves.bands
+    drawn = [earlier, later]
+    if bands is not None:
+        drawn += [earlier + bands.reach_low, earlier + bands.reach_high]
+    low, high = voltage_range(*drawn, least_mv=LEAST_HEIGHT_MV)
+    scale = Scale(rect, *shown_times_ms(comparison), low, high)
     painter.save()
     painter.setClipRect(rect)
     draw_grid(painter, scale, style, every=every)
-    x = scale.x(time)
-    fill_between(painter, x, scale.y(reach[0]), scale.y(reach[1]), palette.band("reach"))
-    noise = bands.noise_mv[row, shown]
-    fill_between(
-        painter, x, scale.y(earlier - noise), scale.y(earlier + noise), palette.band("noise")
-    )
+    x = scale.x(curves.time_ms)
+    if bands is not None:
+        _draw_bands(painter, scale, x, bands, style, around=earlier)
     draw_curve(painter, x, scale.y(earlier), palette.colour("earlier"), 1.6 * style.unit)
     draw_curve(painter, x, scale.y(later), palette.colour("later"), 1.6 * style.unit)
     painter.restore()
     return scale
 
 
-def draw_lead_cell(
+def _draw_bands(
     painter: QPainter,
-    rect: QRectF,
-    comparison: Comparison,
-    lead: str,
+    scale: Scale,
+    x: NDArray[np.float64],
+    bands: LeadBands,
     style: Style,
     *,
-    selected: bool = False,
+    around: NDArray[np.float64] | float,
 ) -> None:
-    """One cell of the lead wall: name, judgement, overlay, change of ST and T."""
-    palette, unit = style.palette, style.unit
-    result = comparison.leads[lead]
-    border = QPen(
-        palette.colour("selection" if selected else "line"), (2 if selected else 1) * unit
-    )
-    painter.setPen(border)
-    painter.setBrush(palette.colour("card"))
-    painter.drawRect(rect.adjusted(unit, unit, -unit, -unit))
-
-    inside = rect.adjusted(9 * unit, 6 * unit, -9 * unit, -6 * unit)
-    line = style.body * 1.45
-    top = QRectF(inside.left(), inside.top(), inside.width(), line)
-    name_font, word_font = style.font(style.body, bold=True), style.font(style.caption)
-    draw_text(painter, top, lead, name_font, palette.colour("ink"))
-    colour = palette.judgement(result.judgement)
-    word = WORDS[result.judgement]
-    needed = text_width(word, word_font) + style.caption * 1.4
-    if needed + text_width(lead, name_font) > inside.width():
-        # No room beside the name: the word gets a line of its own.
-        top.translate(0, style.caption * 1.3)
-    draw_text(painter, top, word, word_font, colour, RIGHT)
-    mark_at = QPointF(top.right() - text_width(word, word_font) - 9 * unit, top.center().y())
-    draw_mark(painter, mark_at, style.caption * 0.72, result.judgement, colour)
-
-    foot = QRectF(inside.left(), inside.bottom() - line, inside.width(), line)
-    changes = next(
-        (
-            text
-            for text in _changes(comparison, lead)
-            if text_width(text, word_font) <= foot.width()
-        ),
-        "",
-    )
-    draw_text(painter, foot, changes, word_font, palette.colour("soft_ink"), RIGHT)
-    plot = QRectF(inside.left(), top.bottom(), inside.width(), foot.top() - top.bottom())
-    draw_overlay(painter, plot, comparison, lead, style, every=CELL_EVERY)
-
-
-def _changes(comparison: Comparison, lead: str) -> list[str]:
-    """The changes of ST and T in words, from the longest to the shortest way to say them."""
-    measures = comparison.leads[lead].measures
-    st, t = signed(measures["st_mv"].change), signed(measures["t_mv"].change)
-    return [
-        f"ST{NARROW}{st} · T{NARROW}{t}{NARROW}mV",
-        f"ST{NARROW}{st} · T{NARROW}{t}",
-        f"ST{st} T{t}",
-    ]
+    """Reach, and repeat noise on it."""
+    reach = scale.y(around + bands.reach_low), scale.y(around + bands.reach_high)
+    noise = scale.y(around - bands.noise), scale.y(around + bands.noise)
+    fill_between(painter, x, *reach, style.palette.band("reach"))
+    fill_between(painter, x, *noise, style.palette.band("noise"))
 
 
 def draw_difference(
     painter: QPainter, rect: QRectF, comparison: Comparison, lead: str, style: Style
 ) -> Scale:
     """Later less earlier, in the bands of noise and reach, and what the shift would make."""
-    row = TWELVE_LEADS.index(lead)
-    laid, bands, palette = comparison.laid, comparison.bands, style.palette
-    first, last = shown_times_ms(comparison)
-    shown = (laid.time_ms >= first) & (laid.time_ms <= last)
-    change = (laid.later_mv - laid.earlier_mv)[row, shown]
-    reach = bands.reach_low_mv[row, shown], bands.reach_high_mv[row, shown]
-    low, high = voltage_range(change, *reach, least_mv=0.3)
-    scale = Scale(rect, first, last, low, high)
+    curves, width = curves_of(comparison, lead), 1.6 * style.unit
+    change, bands = curves.later_mv - curves.earlier_mv, curves.bands
+    drawn = [change] if bands is None else [change, bands.reach_low, bands.reach_high]
+    low, high = voltage_range(*drawn, least_mv=0.3)
+    scale = Scale(rect, *shown_times_ms(comparison), low, high)
     painter.save()
     painter.setClipRect(rect)
     draw_grid(painter, scale, style, every=CELL_EVERY)
-    x = scale.x(laid.time_ms[shown])
-    noise = bands.noise_mv[row, shown]
-    fill_between(painter, x, scale.y(reach[0]), scale.y(reach[1]), palette.band("reach"))
-    fill_between(painter, x, scale.y(-noise), scale.y(noise), palette.band("noise"))
-    draw_curve(painter, x, scale.y(change), palette.colour("ink"), 1.6 * style.unit)
-    draw_curve(
-        painter,
-        x,
-        scale.y(bands.expected_mv[row, shown]),
-        palette.colour("in_reach"),
-        1.6 * style.unit,
-        Qt.PenStyle.DashLine,
-    )
+    x = scale.x(curves.time_ms)
+    if bands is not None:
+        _draw_bands(painter, scale, x, bands, style, around=0.0)
+    draw_curve(painter, x, scale.y(change), style.palette.colour("ink"), width)
+    if bands is not None:
+        colour, dash = style.palette.colour("in_reach"), Qt.PenStyle.DashLine
+        draw_curve(painter, x, scale.y(bands.expected), colour, width, dash)
     painter.restore()
     return scale
 

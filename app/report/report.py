@@ -1,21 +1,23 @@
-"""The comparison report: one page that answers, one of evidence."""
+"""The comparison report: one page that answers, one of evidence.
+
+Where there are further leads, or more notices than the first has room for, a page of each follows.
+"""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRectF, Qt
 from PySide6.QtGui import QPageLayout, QPageSize, QPainter, QPdfWriter, QPen
 
 from app.drawing.chest_map import draw_chest_map
-from app.drawing.lead_plots import GRID_OF_CELLS, draw_lead_cell
 from app.drawing.pen import draw_mark, draw_paragraph, draw_text
 from app.report.page import Page, mm, start_page
 from app.report.tables import Column, draw_table
+from app.report.wall import draw_further_leads, draw_wall
 from core.comparison.results import Comparison
 from core.measures.report import RecordingReport
 from core.notices import Notice
-from core.recordings.leads import TWELVE_LEADS
 from core.version import PROGRAM_NAME, program_version
 from core.wording.caution import KNOWN_LIMITS
 from core.wording.judgements import MEANINGS, WORDS
@@ -45,16 +47,17 @@ def write_report(comparison: Comparison) -> bytes:
     try:
         page = start_page(writer, painter, first=True)
         left_over = _answer_page(page, comparison)
-        n_pages = 3 if left_over else 2
-        page.foot(1, n_pages, _made(comparison))
-        page = start_page(writer, painter, first=False)
-        _evidence_page(page, comparison)
-        page.foot(2, n_pages, _made(comparison))
+        after: list[Callable[[Page], None]] = [lambda page: _evidence_page(page, comparison)]
+        if comparison.further:
+            after.append(lambda page: draw_further_leads(page, comparison))
         if left_over:
+            after.append(lambda page: _further_notices(page, left_over))
+        n_pages = 1 + len(after)
+        page.foot(1, n_pages, _made(comparison))
+        for number, draw in enumerate(after, start=2):
             page = start_page(writer, painter, first=False)
-            page.heading("Further notices")
-            _notices(page, left_over)
-            page.foot(3, n_pages, _made(comparison))
+            draw(page)
+            page.foot(number, n_pages, _made(comparison))
     finally:
         painter.end()
     buffer.close()
@@ -80,8 +83,7 @@ def _answer_page(page: Page, comparison: Comparison) -> Sequence[Notice]:
     _recordings(page, comparison)
     _verdict(page, comparison)
     page.heading("Representative beats")
-    _wall(page, comparison)
-    _legend(page)
+    draw_wall(page, comparison)
     return _notices(page, comparison.notices)
 
 
@@ -93,6 +95,11 @@ def _notices(page: Page, notices: Sequence[Notice]) -> Sequence[Notice]:
             return notices[drawn:]
         page.paragraph(text, gap=0.6)
     return ()
+
+
+def _further_notices(page: Page, notices: Sequence[Notice]) -> None:
+    page.heading("Further notices")
+    _notices(page, notices)
 
 
 def _title(page: Page) -> None:
@@ -162,49 +169,6 @@ def _verdict(page: Page, comparison: Comparison) -> None:
     at = QPointF(page.left + mm(4.6), top + mm(2.0) + style.heading * 0.62)
     draw_mark(painter, at, mm(3.2), overall.judgement, palette.judgement(overall.judgement))
     page.top = box.bottom() + mm(3.0)
-
-
-def _wall(page: Page, comparison: Comparison) -> None:
-    columns, gap = 4, mm(1.5)
-    cell_height = mm(36.0)
-    strip = page.take(3 * cell_height + 2 * gap, mm(1.2))
-    width = (strip.width() - (columns - 1) * gap) / columns
-    for index, lead in enumerate(TWELVE_LEADS):
-        # Down the columns, as leads stand on a printed sheet.
-        column, row = divmod(index, 3)
-        cell = QRectF(
-            strip.left() + column * (width + gap),
-            strip.top() + row * (cell_height + gap),
-            width,
-            cell_height,
-        )
-        draw_lead_cell(page.painter, cell, comparison, lead, page.style)
-
-
-def _legend(page: Page) -> None:
-    """What the colours of the wall mean."""
-    style, painter, palette = page.style, page.painter, page.style.palette
-    strip = page.take(style.caption * 1.5, mm(2.0))
-    font = style.font(style.caption)
-    items = (
-        ("earlier", "earlier beat"),
-        ("later", "later beat"),
-        ("noise", "repeat noise, 95 %"),
-        ("reach", "placement reach, 95 %"),
-    )
-    x = strip.left()
-    middle = strip.center().y()
-    for role, text in items:
-        if role in ("noise", "reach"):
-            painter.fillRect(QRectF(x, middle - mm(1.0), mm(6), mm(2.0)), palette.band(role))
-        else:
-            painter.setPen(QPen(palette.colour(role), mm(0.45)))
-            painter.drawLine(QPointF(x, middle), QPointF(x + mm(6), middle))
-        box = QRectF(x + mm(7), strip.top(), mm(36), strip.height())
-        draw_text(painter, box, text, font, palette.colour("soft_ink"))
-        x += mm(38)
-    box = QRectF(x, strip.top(), strip.right() - x, strip.height())
-    draw_text(painter, box, GRID_OF_CELLS, font, palette.colour("soft_ink"))
 
 
 def _evidence_page(page: Page, comparison: Comparison) -> None:

@@ -96,8 +96,11 @@ class BenchState(QObject):
     def finish(self, comparison: Comparison) -> None:
         """The comparison is done; the lead that matters most comes into view."""
         self.comparison = comparison
+        # Before any view looks: the lead that was in view may not be in this pair.
+        before, self.lead = self.lead, weightiest_lead(comparison)
         self._enter(Phase.JUDGED)
-        self.select_lead(weightiest_lead(comparison))
+        if self.lead != before:
+            self.lead_changed.emit()
 
     def refuse(self, reason: str, liftable_stops: tuple[str, ...] = ()) -> None:
         """The pair cannot be compared, unless the reader lifts what stops it."""
@@ -110,8 +113,9 @@ class BenchState(QObject):
         self._enter(Phase.EMPTY)
 
     def select_lead(self, lead: str) -> None:
-        """Look at a lead."""
-        if lead in TWELVE_LEADS and lead != self.lead:
+        """Look at one of the twelve leads, or at a further one of the pair."""
+        further = () if self.comparison is None else self.comparison.further
+        if (lead in TWELVE_LEADS or lead in further) and lead != self.lead:
             self.lead = lead
             self.lead_changed.emit()
 

@@ -31,6 +31,7 @@ from app.views.recording_card import RecordingCard
 from app.views.start_view import StartView
 from app.views.theme import BODY, current_palette
 from app.views.verdict_panel import VerdictPanel
+from app.views.wall_scroll import WallScroll
 from core import Settings
 from core.comparison.results import Comparison
 from core.errors import TableIncomplete
@@ -91,7 +92,7 @@ class BenchWindow(QMainWindow):
         across = QHBoxLayout(evidence)
         across.setContentsMargins(0, 0, 0, 0)
         across.setSpacing(8)
-        across.addWidget(self.wall, 34)
+        across.addWidget(WallScroll(self.wall, self.state), 34)
         across.addWidget(self.lead_depth, 37)
         across.addLayout(side, 29)
         self.middle = QStackedWidget()

@@ -6,6 +6,7 @@ from PySide6.QtCore import QPointF, QRectF, QSize, Qt
 from PySide6.QtGui import QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
+from app.drawing.lead_curves import curves_of
 from app.drawing.lead_plots import (
     RIGHT,
     axis_room,
@@ -24,16 +25,16 @@ from app.drawing.pen import (
 )
 from app.state.bench_state import BenchState
 from app.views.theme import screen_style
+from core.comparison.judge import NOT_JUDGED
+from core.comparison.results import Comparison
 from core.wording.judgements import WORDS
 
 PAD = 14
-LEGEND = (
-    ("earlier", "earlier"),
-    ("later", "later"),
-    ("noise", "repeat noise"),
-    ("reach", "reach"),
-)
-DIFFERENCE_LEGEND = (("ink", "change: later less earlier"), ("in_reach", "expected"))
+Legend = tuple[tuple[str, str], ...]
+BEATS: Legend = (("earlier", "earlier"), ("later", "later"))
+LEGEND: Legend = (*BEATS, ("noise", "repeat noise"), ("reach", "reach"))
+CHANGE: Legend = (("ink", "change: later less earlier"),)
+DIFFERENCE_LEGEND: Legend = (*CHANGE, ("in_reach", "expected"))
 
 
 class LeadDepth(QWidget):
@@ -64,39 +65,51 @@ class LeadDepth(QWidget):
         painter.setPen(QPen(palette.colour("line"), 1))
         painter.setBrush(palette.colour("card"))
         painter.drawRect(QRectF(self.rect()).adjusted(0.5, 0.5, -0.5, -0.5))
-        result = comparison.leads[lead]
+        reason = comparison.reason_of(lead)
         inside = QRectF(self.rect()).adjusted(PAD, 10, -PAD, -10)
-        self._draw_heading(painter, inside, style, lead, result.judgement)
+        self._draw_heading(painter, inside, style, comparison, lead)
 
-        reason_height = self._reason_height(painter, inside, style, result.reason)
+        reason_height = self._reason_height(painter, inside, style, reason)
         across, below = axis_room(style)
         plots = inside.adjusted(across, 32, 0, -reason_height - 8)
         labels = QRectF(plots.left(), plots.top(), plots.width(), 18)
         legend = 20.0
         gap = below / 2  # the topmost number of an axis rises by half its height above the plot
-        for_plots = plots.height() - labels.height() - 2 * (below + legend) - gap
-        overlay = QRectF(plots.left(), labels.bottom(), plots.width(), for_plots * 0.60)
+        curves = curves_of(comparison, lead)
+        beats, change = LEGEND, DIFFERENCE_LEGEND
+        if curves.bands is None:
+            beats = tuple(item for item in BEATS if item[0] in curves.roles)
+            change = CHANGE if len(beats) == len(BEATS) else ()
+        n_plots = 2 if change else 1
+        for_plots = plots.height() - labels.height() - n_plots * (below + legend) - gap
+        share = 0.60 if change else 1.0
+        overlay = QRectF(plots.left(), labels.bottom(), plots.width(), for_plots * share)
         scale = draw_overlay(painter, overlay, comparison, lead, style, every=1)
         draw_axes(painter, scale, style)
         draw_fiducials(painter, scale, comparison, style, labels)
         row = QRectF(inside.left(), overlay.bottom() + below, inside.width(), legend)
-        _draw_legend(painter, row, style, LEGEND)
-        difference = QRectF(plots.left(), row.bottom() + gap, plots.width(), for_plots * 0.40)
-        draw_axes(painter, draw_difference(painter, difference, comparison, lead, style), style)
-        row.moveTop(difference.bottom() + below)
-        _draw_legend(painter, row, style, DIFFERENCE_LEGEND)
+        _draw_legend(painter, row, style, beats)
+        if change:
+            height = for_plots - overlay.height()
+            difference = QRectF(plots.left(), row.bottom() + gap, plots.width(), height)
+            draw_axes(painter, draw_difference(painter, difference, comparison, lead, style), style)
+            row.moveTop(difference.bottom() + below)
+            _draw_legend(painter, row, style, change)
         painter.end()
 
     def _draw_heading(
-        self, painter: QPainter, inside: QRectF, style: Style, lead: str, judgement: str
+        self, painter: QPainter, inside: QRectF, style: Style, comparison: Comparison, lead: str
     ) -> None:
         top = QRectF(inside.left(), inside.top(), inside.width(), 26)
         heading = style.font(style.heading, bold=True)
         draw_text(painter, top, f"{lead} in depth", heading, style.palette.colour("ink"))
-        colour, font = style.palette.judgement(judgement), style.font(style.body)
-        draw_text(painter, top, WORDS[judgement], font, colour, RIGHT)
-        at = QPointF(top.right() - text_width(WORDS[judgement], font) - 12, top.center().y())
-        draw_mark(painter, at, 11, judgement, colour)
+        judged = lead in comparison.leads
+        code = comparison.leads[lead].judgement if judged else NOT_JUDGED
+        colour, font = style.palette.judgement(code), style.font(style.body)
+        draw_text(painter, top, WORDS[code], font, colour, RIGHT)
+        if judged:
+            at = QPointF(top.right() - text_width(WORDS[code], font) - 12, top.center().y())
+            draw_mark(painter, at, 11, code, colour)
 
     def _reason_height(self, painter: QPainter, inside: QRectF, style: Style, reason: str) -> float:
         """Draw the reason at the bottom; the height that it takes."""
@@ -107,12 +120,7 @@ class LeadDepth(QWidget):
         return height
 
 
-def _draw_legend(
-    painter: QPainter,
-    row: QRectF,
-    style: Style,
-    items: tuple[tuple[str, str], ...],
-) -> None:
+def _draw_legend(painter: QPainter, row: QRectF, style: Style, items: Legend) -> None:
     """Short samples of lines and bands with their names."""
     palette, font = style.palette, style.font(style.caption)
     x, middle = row.left(), row.center().y()

@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.comparison.bands import change_bands
+from core.comparison.further import further_leads_of
 from core.comparison.gate import pair_notices
 from core.comparison.judge import (
     BACKED,
@@ -161,6 +162,7 @@ def compare(
         bands=change_bands(first, noise, reach, expected, settings),
         beat_pairs=pairs,
         leads=leads,
+        further=further_leads_of(first, second, laid),
         placement=placement,
         overall=_overall(leads, placement),
         notices=notices,

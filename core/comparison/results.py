@@ -7,6 +7,7 @@ from datetime import datetime
 from typing import Any
 
 from core.comparison.bands import Bands
+from core.comparison.further import FurtherLead
 from core.comparison.laid import LaidBeats
 from core.comparison.pairing import BeatPair
 from core.json_numbers import number_or_none
@@ -160,7 +161,10 @@ class Overall:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Comparison:
-    """Two recordings of one person, compared."""
+    """Two recordings of one person, compared.
+
+    ``leads`` are the twelve; ``further`` are those beyond them that either recording holds.
+    """
 
     settings: Settings
     made_at: datetime
@@ -170,9 +174,14 @@ class Comparison:
     bands: Bands
     beat_pairs: tuple[BeatPair, ...]
     leads: dict[str, LeadComparison]
+    further: dict[str, FurtherLead]
     placement: Placement
     overall: Overall
     notices: tuple[Notice, ...]
+
+    def reason_of(self, lead: str) -> str:
+        """The numbers of any lead, and why it is judged so or not at all, in a sentence."""
+        return (self.further if lead in self.further else self.leads)[lead].reason
 
     def to_dict(self) -> dict[str, Any]:
         """The comparison of the contract."""

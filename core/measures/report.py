@@ -10,9 +10,9 @@ from numpy.typing import NDArray
 
 from core.beats.analyse import BeatAnalysis, analyse_beats
 from core.beats.fiducials import find_fiducials
-from core.beats.further import average_further_leads
 from core.conditioning.calm import calm_outside_qrs
 from core.json_numbers import number_or_none, numbers_or_none
+from core.measures.further import FurtherMeasures, measure_further_leads
 from core.measures.intervals import corrected_qt_ms
 from core.measures.lead_values import (
     Points,
@@ -57,8 +57,8 @@ class RecordingReport:
     beat_values : dict of name to ndarray, shape (n_used, 12)
         The same of every beat used.
     q_mv, p_mv, noise_uv : ndarray, shape (12,)
-    further_values : dict of name to ndarray, shape (n_further,)
-        The measures of the recording's further leads.
+    further : FurtherMeasures
+        What is measured on leads beyond the twelve.
     """
 
     recording: Recording
@@ -74,7 +74,7 @@ class RecordingReport:
     quality: tuple[LeadQuality, ...]
     rr_s: float
     notices: tuple[Notice, ...]
-    further_values: dict[str, NDArray[np.float64]]
+    further: FurtherMeasures
 
     @property
     def step_ms(self) -> float:
@@ -165,10 +165,7 @@ class RecordingReport:
                 analysis.r_index, recording.sampling_rate_hz
             ),
             "leads": {lead: self._lead_dict(row) for row, lead in enumerate(TWELVE_LEADS)},
-            "further_measures": {
-                lead: {name: number_or_none(v[row]) for name, v in self.further_values.items()}
-                for row, lead in enumerate(recording.further_leads)
-            },
+            "further_measures": self.further.to_dict(),
             "representative_beat": {
                 "start_ms": float(self.time_ms[0]),
                 "step_ms": self.step_ms,
@@ -292,21 +289,8 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         quality=quality,
         rr_s=float(np.mean(np.diff([beat.r_time_s for beat in analysis.beats]))),
         notices=(*recording.notices, *_notices(recording, analysis, quality, points, faults, flat)),
-        further_values=_further_values(recording, analysis, points),
+        further=measure_further_leads(recording, analysis, points),
     )
-
-
-def _further_values(
-    recording: Recording, analysis: BeatAnalysis, points: Points
-) -> dict[str, NDArray[np.float64]]:
-    if not recording.further_leads:
-        return {}
-    average = average_further_leads(recording.further_mv.T, analysis)
-    f = points.fiducials
-    calm = calm_outside_qrs(
-        average, f.qrs_onset, f.qrs_offset, sampling_rate_hz=recording.sampling_rate_hz
-    )
-    return measure_lead_values(calm - isoelectric_level(calm, points), points)
 
 
 def _axis(area: NDArray[np.float64]) -> float | None:

@@ -61,6 +61,16 @@ def grade_leads(recording: Recording, drowned: Collection[str] = ()) -> tuple[Le
     return tuple(grades.values())
 
 
+def grade_further_leads(recording: Recording) -> tuple[LeadQuality, ...]:
+    """Grade the leads beyond the twelve by their own samples."""
+    saturated = SATURATED_S * recording.sampling_rate_hz
+    faults = [_fault(samples_mv, saturated) for samples_mv in recording.further_mv.T]
+    return tuple(
+        LeadQuality(lead, usable=fault is None, reason=fault)
+        for lead, fault in zip(recording.further_leads, faults, strict=True)
+    )
+
+
 def _fault(samples_mv: NDArray[np.float64], saturated_samples: float) -> str | None:
     missing = np.isnan(samples_mv)
     if missing.mean() > MOST_MISSING:

@@ -1,13 +1,16 @@
 from __future__ import annotations
 
+import re
+
 import numpy as np
 import pytest
 from PySide6.QtCore import QRectF
 
-from app.drawing.lead_plots import draw_lead_cell
+from app.drawing.lead_cell import NOTE_OF_CELLS, draw_lead_cell
 from app.drawing.palette import DARK, LIGHT
 from app.drawing.pen import Style
 from core.recordings.leads import TWELVE_LEADS
+from core.wording.further import values_of_further_lead
 from core.wording.judgements import WORDS
 from core.wording.numbers import signed
 from tests.app.drawing.changed import (
@@ -109,3 +112,46 @@ def test_a_narrow_cell_keeps_its_words_inside_and_apart(inferior, style, width):
 def test_a_lead_without_samples_is_still_named_and_judged(raised, style):
     empty = with_judgement(without_later(raised, "V1"), "V1", "not-judged")
     assert {"V1", "not judged"} <= {piece.text for piece in read(empty, "V1", style)}
+
+
+@pytest.mark.parametrize("lead", ["V3R", "V4R", "V7", "V9", "X"])
+def test_a_further_lead_is_called_not_judged_and_tells_its_values(further, style, lead):
+    drawn = [piece.text for piece in read(further, lead, style)]
+    shown = further.further[lead]
+    assert drawn == [lead, "not judged", *values_of_further_lead(shown.earlier, shown.later)]
+
+
+def test_a_further_lead_has_no_mark(further, style):
+    colour = LIGHT.judgement("not-judged").getRgb()[:3]
+    # The mark of a lead that is not judged is a dash of some width, in the colour of its word.
+    word = next(piece for piece in read(further, "V7", style) if piece.text == "not judged")
+    beside = seen(further, "V7", style)[22:48, 60 : int(word.left) - 1]
+    unjudged = seen(with_judgement(further, "V1", "not-judged"), "V1", style)
+    assert not (beside == colour).all(axis=-1).any()
+    assert (unjudged[22:48, 60 : int(word.left) - 1] == colour).all(axis=-1).any()
+
+
+@pytest.mark.parametrize(("lead", "beats"), [("V7", 2), ("V3R", 1), ("X", 1), ("V9", 1)])
+def test_a_further_lead_draws_the_beats_that_there_are(further, style, lead, beats):
+    drawn = seen(further, lead, style)[40:110]
+    inked = [
+        (np.abs(drawn.astype(int) - LIGHT.colour(role).getRgb()[:3]).sum(axis=-1) < 30).any()
+        for role in ("earlier", "later")
+    ]
+    assert sum(inked) == beats
+
+
+@pytest.mark.parametrize("width", [124.0, 135.0, 160.0])
+def test_all_cells_of_a_wall_tell_their_changes_in_one_form(raised, inferior, style, width):
+    cell = QRectF(20, 20, width, 110)
+    forms = {
+        re.sub(r"[+−]?\d\.\d\d", "", read(comparison, lead, style, cell=cell)[-1].text)
+        for comparison in (raised, inferior)
+        for lead in TWELVE_LEADS
+    }
+    assert len(forms) == 1
+    assert "mV" not in forms.pop()
+
+
+def test_the_note_says_what_the_numbers_are(style):
+    assert NOTE_OF_CELLS.endswith("ST, T: change in mV")

@@ -4,16 +4,16 @@ import numpy as np
 import pytest
 from PySide6.QtCore import QRectF
 
+from app.drawing.lead_cell import GRID_OF_CELLS
+from app.drawing.lead_curves import shown_times_ms
 from app.drawing.lead_plots import (
     CELL_EVERY,
-    GRID_OF_CELLS,
     axis_room,
     draw_axes,
     draw_difference,
     draw_fiducials,
     draw_grid,
     draw_overlay,
-    shown_times_ms,
 )
 from app.drawing.palette import LIGHT
 from app.drawing.pen import Style

@@ -22,7 +22,7 @@ from tests.app.views.showing import show
 
 PANELS = (RecordingCard, LeadWall, LeadDepth, ChestPanel)
 SIZES = ((1280, 720), (1440, 900))
-NAMES = ("raised", "inferior", "steady", "medial", "four_flat")
+NAMES = ("raised", "inferior", "steady", "medial", "four_flat", "further")
 # The rounding of a glyph's advance, over a line of text, in px.
 SLACK = 2.0
 
@@ -69,7 +69,7 @@ def judged(qapp, request) -> Iterator[Judged]:
     shown = [one for kind in PANELS for one in bench.findChildren(kind) if one.isVisible()]
     assert len(shown) == len(PANELS) + 1  # two cards
     panels, depths = [Written(one, drawn_on(one)) for one in shown], {}
-    for lead in comparison.leads:
+    for lead in [*comparison.leads, *comparison.further]:
         bench.state.select_lead(lead)
         depths[lead] = Written(bench.lead_depth, drawn_on(bench.lead_depth))
     yield Judged(comparison, panels, depths)
@@ -99,7 +99,7 @@ def test_nothing_but_a_files_own_words_is_ever_shortened(judged):
 def test_the_reason_stands_whole_under_each_lead_in_depth(judged):
     cut = [
         lead
-        for lead, result in judged.comparison.leads.items()
-        if " ".join(result.reason.split()) not in words(judged.depths[lead].inside())
+        for lead, written in judged.depths.items()
+        if " ".join(judged.comparison.reason_of(lead).split()) not in words(written.inside())
     ]
     assert cut == []

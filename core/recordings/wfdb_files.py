@@ -26,6 +26,8 @@ NO_FILE = "~"
 _FILE_NAME = re.compile(r"[-\w]+(?:\.\w*)?", re.ASCII)
 _SEGMENT_NAME = re.compile(r"[-\w]+", re.ASCII)
 _SEGMENTED = re.compile(r"[^\s/]+/\d")
+# After the record's name: its segments, where it has some, and its signals.
+_COUNTS = re.compile(r"[^\s/]+(?:/(\d{1,9}))?\s+(\d{1,9})(?!\d)")
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,7 +54,6 @@ def files_of_record(header_path: Path) -> list[Path]:
     """
     name = header_path.name
     whole = _header(name, header_path)
-    check_record_line(_where(name, whole, whole.lines[0][0]), whole.lines[0][1])
     headers = [whole]
     if whole.is_segmented:
         headers += _segments(name, whole)
@@ -98,7 +99,21 @@ def _header(name: str, path: Path) -> _Header:
             f"{name}: the WFDB header names {len(lines) - 1} signals or segments; {MOST_LINES} can "
             "be read. Export a shorter stretch as one record."
         )
+    check_record_line(_where(name, header, lines[0][0]), lines[0][1])
+    _refuse_fewer_lines(name, header)
     return header
+
+
+def _refuse_fewer_lines(name: str, header: _Header) -> None:
+    number, line = header.lines[0]
+    counts = _COUNTS.match(line)
+    stated = 0 if counts is None else int(counts[1] or counts[2])
+    what = "segments" if header.is_segmented else "signals"
+    if counts is None or stated > len(header.lines) - 1:
+        raise _damaged(
+            f"{_where(name, header, number)} states {stated} {what}, and {len(header.lines) - 1} "
+            "lines follow"
+        )
 
 
 def _segments(name: str, whole: _Header) -> list[_Header]:
@@ -120,8 +135,6 @@ def _segments(name: str, whole: _Header) -> list[_Header]:
                 "one. Copy the whole record into one folder."
             )
         found[segment] = _header(name, path)
-        first, line = found[segment].lines[0]
-        check_record_line(_where(name, found[segment], first), line)
         if found[segment].is_segmented:
             raise _damaged(
                 f"{where} names the segment {shown(path.stem)}, which has segments itself"

@@ -20,6 +20,8 @@ LONGEST_LINE = 500
 # Signals of one record, or segments that it is joined from. An ECG has twelve leads and some
 # more; to read one segment takes some ms.
 MOST_LINES = 100
+# Signals of all segments, a segment that comes again counted again: each is read several times.
+MOST_LINES_IN_ALL = 1500
 # Stands for a stretch, or a signal, without a file.
 NO_FILE = "~"
 # A file's name as the standard has it: letters, digits, "_" and "-", and one ending.
@@ -119,8 +121,16 @@ def _refuse_fewer_lines(name: str, header: _Header) -> None:
 def _segments(name: str, whole: _Header) -> list[_Header]:
     """The headers of the segments, each once."""
     found: dict[str, _Header] = {}
+    n_lines = 0
     for number, line in whole.lines[1:]:
         segment = line.split()[0]
+        if segment in found:
+            n_lines += len(found[segment].lines)
+        if n_lines > MOST_LINES_IN_ALL:
+            raise RecordingError(
+                f"{name}: the segments of the WFDB record name more than {MOST_LINES_IN_ALL} "
+                "signals. Export a shorter stretch as one record."
+            )
         if segment == NO_FILE or segment in found:
             continue
         where = _where(name, whole, number)
@@ -135,6 +145,7 @@ def _segments(name: str, whole: _Header) -> list[_Header]:
                 "one. Copy the whole record into one folder."
             )
         found[segment] = _header(name, path)
+        n_lines += len(found[segment].lines)
         if found[segment].is_segmented:
             raise _damaged(
                 f"{where} names the segment {shown(path.stem)}, which has segments itself"

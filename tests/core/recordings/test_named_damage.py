@@ -125,6 +125,10 @@ def test_wfdb_frames_and_skews_that_claim_gigabytes(tmp_path, form, says):
     assert says in refusal(record(tmp_path, form=form))
 
 
+def test_a_wfdb_skew_that_leaves_no_sample(tmp_path):
+    assert "the file holds no samples" in refusal(record(tmp_path, form="16:500"))
+
+
 def test_a_wfdb_pause_that_claims_gigabytes(tmp_path):
     """A segment without a file takes nothing on disk, and a NaN for every sample in memory."""
     layout = [f"~ 0 200/mV 16 0 0 0 0 {lead}" for lead in LEADS]
@@ -167,6 +171,24 @@ def test_wfdb_segments_that_lead_nowhere(tmp_path, segments, says):
     record(tmp_path, first="two/1 12 500 120", lines=["bad 120"], name="two")
     first = f"whole/{len(segments)} 12 500 120"
     assert says in refusal(record(tmp_path, first=first, lines=segments, name="whole"))
+
+
+def test_wfdb_segments_of_many_signals(tmp_path):
+    """A hundred segments of a hundred signals are a few kilobytes, and seconds of reading."""
+    lines = [f"bad.dat 16 200/mV 16 0 0 0 0 {LEADS[k % 12]}" for k in range(100)]
+    record(tmp_path, first="many 100 500 14", lines=lines, name="many")
+    whole = record(tmp_path, first="whole/100 100 500 1400", lines=["many 14"] * 100, name="whole")
+    assert "name more than 1500 signals" in refusal(whole)
+
+
+def test_a_wfdb_pause_as_long_as_memory_allows(tmp_path):
+    """Forty minutes of twelve leads are 120 MB of NaN, from a header alone."""
+    layout = [f"~ 0 200/mV 16 0 0 0 0 {lead}" for lead in LEADS]
+    record(tmp_path)
+    record(tmp_path, first="layout 12 500 0", lines=layout, name="layout")
+    lines = ["layout 0", "bad 120", "~ 1199880"]
+    path = record(tmp_path, first="whole/3 12 500 1200000", lines=lines, name="whole")
+    assert "more of the record is missing than was recorded" in refusal(path)
 
 
 def test_two_wfdb_records_that_are_each_other_s_segments(tmp_path):
@@ -446,6 +468,15 @@ def test_more_compressed_samples_than_are_decoded_in_a_second(tmp_path, monkeypa
 
 
 # Annotated ECGs: bombs of XML stand in test_aecg_package.py
+
+
+def test_sets_within_sets_of_an_annotated_ecg(tmp_path):
+    """Eighty-five sets around the same sequences: each must not go through all of them again."""
+    sequences = aecg.times() + aecg.sequence("MDC_ECG_LEAD_V1", "<value/>") * 8000
+    nested = "<sequenceSet>" * 85 + sequences + "</sequenceSet>" * 85
+    path = tmp_path / "bad.xml"
+    path.write_bytes(aecg.annotated_ecg(aecg.series(nested)))
+    assert "none of the twelve leads" in refusal(path)
 
 
 def test_an_entity_within_the_samples_of_an_annotated_ecg(tmp_path):

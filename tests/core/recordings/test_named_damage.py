@@ -181,6 +181,12 @@ def test_wfdb_segments_of_many_signals(tmp_path):
     assert "name more than 1500 signals" in refusal(whole)
 
 
+def test_compressed_flat_lines_of_a_day(tmp_path):
+    """An hour of them is some ten kilobytes; one that claims a day would take half a minute."""
+    path = record(tmp_path, form="516", first="bad 12 500 43200000")
+    assert "it is cut off" in refusal(path)
+
+
 def test_a_wfdb_pause_as_long_as_memory_allows(tmp_path):
     """Forty minutes of twelve leads are 120 MB of NaN, from a header alone."""
     layout = [f"~ 0 200/mV 16 0 0 0 0 {lead}" for lead in LEADS]

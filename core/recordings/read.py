@@ -6,8 +6,6 @@ import os
 from collections.abc import Callable
 from pathlib import Path
 
-import numpy as np
-
 from core.errors import RecordingError
 from core.recordings.aecg.reader import looks_like_aecg, read_aecg
 from core.recordings.cleanest import cleanest_of
@@ -76,7 +74,7 @@ def read_recording(
         held = _open(chosen, unit, sampling_rate_hz)
         if stretch_s is not None:
             return asked_stretch(held, *stretch_s)
-        recording = held.whole() if held.fits_memory else cleanest_of(held)
+        return held.whole() if held.fits_memory else cleanest_of(held)
     except OSError as error:
         raise RecordingError(
             f"{chosen.name}: the file cannot be opened ({error.strerror or 'unknown reason'}). "
@@ -87,11 +85,6 @@ def read_recording(
             f"{chosen.name}: the file claims more samples than fit into memory. "
             "Export a shorter stretch of it."
         ) from error
-    if np.isnan(recording.signal_mv).all():
-        raise RecordingError(
-            f"{held.name}: the file holds no samples, only gaps. Export the recording again."
-        )
-    return recording
 
 
 def _open(chosen: Path, unit: str | None, sampling_rate_hz: float | None) -> Held:

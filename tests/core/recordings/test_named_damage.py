@@ -125,10 +125,6 @@ def test_wfdb_frames_and_skews_that_claim_gigabytes(tmp_path, form, says):
     assert says in refusal(record(tmp_path, form=form))
 
 
-def test_a_wfdb_skew_that_leaves_no_sample(tmp_path):
-    assert "the file holds no samples" in refusal(record(tmp_path, form="16:500"))
-
-
 def test_a_wfdb_pause_that_claims_gigabytes(tmp_path):
     """A segment without a file takes nothing on disk, and a NaN for every sample in memory."""
     layout = [f"~ 0 200/mV 16 0 0 0 0 {lead}" for lead in LEADS]

@@ -23,7 +23,7 @@ from pydicom.uid import DeflatedExplicitVRLittleEndian, ExplicitVRBigEndian
 from core import RecordingError, read_recording
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.scp import signals as scp_signals
-from sample_records.maker.dicom_file import waveform_group, write_dicom
+from sample_records.maker.dicom_file import coded, waveform_group, write_dicom
 from tests.helpers import aecg_files as aecg
 from tests.helpers import scp_files as scp
 from tests.helpers.csv_files import RATE, in_mv, with_time
@@ -286,6 +286,21 @@ def test_a_packed_dicom_object_that_claims_gigabytes(tmp_path):
     assert "holds more than 100 MB" in refusal(path)
 
 
+def test_what_pydicom_remarks_is_not_passed_on(tmp_path):
+    """A comma in an identifier: pydicom warns and reads on, and so does the reader, unheard."""
+    path = dicom(tmp_path, lambda group: None)
+    content = path.read_bytes()
+    path.write_bytes(content.replace(b"1.2.840.10008.1.2.1\0", b"1.2,840.10008.1.2.1\0", 1))
+    reading = read_watched(path)
+    assert (reading.faults, reading.refusal) == ([], None)
+
+
+def test_a_unit_of_control_characters_is_shown_as_text(tmp_path):
+    unit = coded("uV\x08\x1b[2Jxxxx", "UCUM", "microvolt")
+    said = refusal(dicom(tmp_path, of_lead_i("ChannelSensitivityUnitsSequence", unit)))
+    assert "lead I is stored in the unit 'uV??[2Jxxxx', which is no voltage" in said
+
+
 def test_sequences_within_sequences(tmp_path):
     """Thousands of nested items of a few bytes each."""
     path = dicom(tmp_path, lambda group: None)
@@ -474,7 +489,7 @@ def test_more_compressed_samples_than_are_decoded_in_a_second(tmp_path, monkeypa
 
 def test_sets_within_sets_of_an_annotated_ecg(tmp_path):
     """Eighty-five sets around the same sequences: each must not go through all of them again."""
-    sequences = aecg.times() + aecg.sequence("MDC_ECG_LEAD_V1", "<value/>") * 8000
+    sequences = aecg.times() + aecg.sequence("MDC_ECG_LEAD_V1", "<value/>") * 3000
     nested = "<sequenceSet>" * 85 + sequences + "</sequenceSet>" * 85
     path = tmp_path / "bad.xml"
     path.write_bytes(aecg.annotated_ecg(aecg.series(nested)))

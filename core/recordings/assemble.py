@@ -136,7 +136,9 @@ def on_one_time_axis(
         )
     longest = max(values.size for values in samples.values())
     return {
-        lead: np.pad(values, (0, longest - values.size), constant_values=np.nan)
+        lead: values
+        if values.size == longest
+        else np.pad(values, (0, longest - values.size), constant_values=np.nan)
         for lead, values in samples.items()
     }
 

@@ -95,8 +95,8 @@ def read_csv(
         ) from error
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
         raise RecordingError(
-            f"{name}: the table cannot be read ({type(error).__name__}). "
-            "Export it again, one row a sample."
+            f"{name}: the table cannot be read. Save it again as plain text in UTF-8, with a "
+            "header row of lead names and one row a sample."
         ) from error
 
 

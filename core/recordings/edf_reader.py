@@ -86,7 +86,7 @@ def open_edf(path: Path) -> Held:
     except (RecordingError, OSError, MemoryError):
         raise
     except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise damaged(name, type(error).__name__) from error
+        raise damaged(name, "its header contradicts itself") from error
 
 
 def _held(path: Path, file: BinaryIO, layout: Layout) -> Held:

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import contextlib
-import io
 import warnings
 from collections.abc import Iterator
 
@@ -12,15 +11,10 @@ import numpy as np
 
 @contextlib.contextmanager
 def quietly() -> Iterator[None]:
-    """Keep a library from warning or printing: a reader says itself what is wrong, or nothing.
+    """Keep a library from warning: a reader says itself what is wrong, or nothing.
 
-    Standard output may be a result that somebody pipes on. Warnings and output are switched for
-    the whole process, so two threads must not read at the same time.
+    Warnings are switched for the whole process, so two threads must not read at the same time.
     """
-    with (
-        warnings.catch_warnings(),
-        np.errstate(all="ignore"),
-        contextlib.redirect_stdout(io.StringIO()),
-    ):
+    with warnings.catch_warnings(), np.errstate(all="ignore"):
         warnings.simplefilter("ignore")
         yield

@@ -85,7 +85,7 @@ def read_recording(
     except MemoryError as error:
         raise RecordingError(
             f"{chosen.name}: the file claims more samples than fit into memory. "
-            "Export the recording again."
+            "Export a shorter stretch of it."
         ) from error
 
 

@@ -20,12 +20,16 @@ LONGEST_LINE = 500
 # Signals of one record, or segments that it is joined from. An ECG has twelve leads and some
 # more; to read one segment takes some ms.
 MOST_LINES = 100
+# Signals of all segments, a segment that comes again counted again: each is read several times.
+MOST_LINES_IN_ALL = 1500
 # Stands for a stretch, or a signal, without a file.
 NO_FILE = "~"
 # A file's name as the standard has it: letters, digits, "_" and "-", and one ending.
 _FILE_NAME = re.compile(r"[-\w]+(?:\.\w*)?", re.ASCII)
 _SEGMENT_NAME = re.compile(r"[-\w]+", re.ASCII)
 _SEGMENTED = re.compile(r"[^\s/]+/\d")
+# After the record's name: its segments, where it has some, and its signals.
+_COUNTS = re.compile(r"[^\s/]+(?:/(\d{1,9}))?\s+(\d{1,9})(?!\d)")
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,7 +56,6 @@ def files_of_record(header_path: Path) -> list[Path]:
     """
     name = header_path.name
     whole = _header(name, header_path)
-    check_record_line(_where(name, whole, whole.lines[0][0]), whole.lines[0][1])
     headers = [whole]
     if whole.is_segmented:
         headers += _segments(name, whole)
@@ -98,14 +101,36 @@ def _header(name: str, path: Path) -> _Header:
             f"{name}: the WFDB header names {len(lines) - 1} signals or segments; {MOST_LINES} can "
             "be read. Export a shorter stretch as one record."
         )
+    check_record_line(_where(name, header, lines[0][0]), lines[0][1])
+    _refuse_fewer_lines(name, header)
     return header
+
+
+def _refuse_fewer_lines(name: str, header: _Header) -> None:
+    number, line = header.lines[0]
+    counts = _COUNTS.match(line)
+    stated = 0 if counts is None else int(counts[1] or counts[2])
+    what = "segments" if header.is_segmented else "signals"
+    if counts is None or stated > len(header.lines) - 1:
+        raise _damaged(
+            f"{_where(name, header, number)} states {stated} {what}, and {len(header.lines) - 1} "
+            "lines follow"
+        )
 
 
 def _segments(name: str, whole: _Header) -> list[_Header]:
     """The headers of the segments, each once."""
     found: dict[str, _Header] = {}
+    n_lines = 0
     for number, line in whole.lines[1:]:
         segment = line.split()[0]
+        if segment in found:
+            n_lines += len(found[segment].lines)
+        if n_lines > MOST_LINES_IN_ALL:
+            raise RecordingError(
+                f"{name}: the segments of the WFDB record name more than {MOST_LINES_IN_ALL} "
+                "signals. Export a shorter stretch as one record."
+            )
         if segment == NO_FILE or segment in found:
             continue
         where = _where(name, whole, number)
@@ -120,8 +145,7 @@ def _segments(name: str, whole: _Header) -> list[_Header]:
                 "one. Copy the whole record into one folder."
             )
         found[segment] = _header(name, path)
-        first, line = found[segment].lines[0]
-        check_record_line(_where(name, found[segment], first), line)
+        n_lines += len(found[segment].lines)
         if found[segment].is_segmented:
             raise _damaged(
                 f"{where} names the segment {shown(path.stem)}, which has segments itself"

@@ -133,7 +133,8 @@ def read_set(node: Node) -> LeadSet | None:
     """
     times: dict[str, Node] = {}
     values: list[tuple[str, float, Node]] = []
-    for sequence in node.within("sequence"):
+    # Of a set within a set, which the standard does not have, each keeps its own.
+    for sequence in node.within("sequence", not_in=("sequenceSet",)):
         code, value = sequence.code.upper(), sequence.first("value")
         if value is None:
             continue

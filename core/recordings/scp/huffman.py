@@ -94,7 +94,7 @@ def read_tables(content: bytes) -> list[Table]:
     if n_tables == DEFAULT_TABLE_MARK:
         return [DEFAULT_TABLE]
     if n_tables > MOST_TABLES:
-        raise HuffmanError(f"{n_tables} tables")
+        raise HuffmanError(f"{n_tables} code tables")
     tables, at = [], 2
     for _ in range(n_tables):
         if at + 2 > len(content):
@@ -124,7 +124,7 @@ def decode(data: bytes, n_values: int, tables: list[Table]) -> NDArray[np.int64]
     """
     n_bits = 8 * len(data)
     if n_values > n_bits:
-        raise HuffmanError(f"{n_values} samples in {len(data)} bytes")
+        raise HuffmanError(f"only {len(data)} bytes for {n_values} samples")
     padded = data + bytes(8)
     values = np.empty(n_values, dtype=np.int64)
     table, at, done, n_switches = tables[0], 0, 0, 0

@@ -91,7 +91,7 @@ def read_signals(sections: dict[int, Section]) -> Signals:
     except struct.error as error:
         raise SignalError("a section is cut off") from error
     except HuffmanError as error:
-        raise SignalError(f"the compressed samples hold {error}") from error
+        raise SignalError(f"its compressed samples are damaged ({error})") from error
 
 
 def _rhythm(sections: dict[int, Section]) -> Signals:
@@ -128,12 +128,12 @@ def _leads(content: bytes) -> tuple[list[_Lead], bool]:
     """Section 3: the leads, and whether a reference beat was subtracted."""
     n_leads, flags = struct.unpack_from("<BB", content)
     if not 1 <= n_leads <= MOST_LEADS:
-        raise SignalError(f"it states {n_leads} leads")
+        raise SignalError(f"it states {n_leads} leads, where 1 to {MOST_LEADS} can be")
     leads = []
     for position in range(n_leads):
         first, last, number = struct.unpack_from("<IIB", content, 2 + 9 * position)
         if not 1 <= first <= last <= LONGEST_RECORD_SAMPLES:
-            raise SignalError(f"a lead runs from sample {first} to {last}")
+            raise SignalError(f"it states that a lead runs from sample {first} to {last}")
         leads.append(_Lead(number, first, last))
     span = max(lead.last for lead in leads) - min(lead.first for lead in leads) + 1
     if span > FARTHEST_APART * max(lead.n_samples for lead in leads):
@@ -163,7 +163,7 @@ def _decoded(data: bytes, n_samples: int, tables: list[Table] | None) -> NDArray
     if tables is not None:
         return decode(data, n_samples, tables).astype(np.float64)
     if n_samples > len(data) // 2:
-        raise SignalError(f"{n_samples} samples in {len(data)} bytes")
+        raise SignalError(f"a lead of {n_samples} samples has only {len(data)} bytes")
     return np.frombuffer(data, "<i2", n_samples).astype(np.float64)
 
 
@@ -199,7 +199,7 @@ def _with_reference_beat(
         for data in beat.data
     ]
     if n_beats > MOST_BEATS:
-        raise SignalError(f"it states {n_beats} beats")
+        raise SignalError(f"it states {n_beats} beats, more than it can hold")
     whole = [values * coded.step_nv for values in residual]
     n_put_back = [0] * len(leads)
     for position in range(n_beats):

@@ -23,7 +23,7 @@ from pydicom.uid import DeflatedExplicitVRLittleEndian, ExplicitVRBigEndian
 from core import RecordingError, read_recording
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.scp import signals as scp_signals
-from sample_records.maker.dicom_file import waveform_group, write_dicom
+from sample_records.maker.dicom_file import coded, waveform_group, write_dicom
 from tests.helpers import aecg_files as aecg
 from tests.helpers import scp_files as scp
 from tests.helpers.csv_files import RATE, in_mv, with_time
@@ -91,8 +91,9 @@ def test_the_record_that_is_changed_below_is_sound(tmp_path):
         (f"bad 12 {'9' * 400} 120", "cannot be read as the WFDB header describes them"),
         (f"bad 12 500 {'9' * 400}", "cannot be read as"),
         ("bad 12 500 0", "cannot be read as"),
-        ("bad 12 500 121", "it is cut off"),
-        ("bad 99999 500 120", "cannot be read as"),
+        ("bad 12 500 121", "bad.dat holds 2880 bytes and the header states samples of 2904"),
+        ("bad 13 500 120", "states 13 signals, and 12 lines follow"),
+        ("bad 9999999999 500 120", "states 0 signals, and 12 lines follow"),
         ("bad 12 500 9999999999", "it is cut off"),
     ],
 )
@@ -168,6 +169,30 @@ def test_wfdb_segments_that_lead_nowhere(tmp_path, segments, says):
     assert says in refusal(record(tmp_path, first=first, lines=segments, name="whole"))
 
 
+def test_wfdb_segments_of_many_signals(tmp_path):
+    """A hundred segments of a hundred signals are a few kilobytes, and seconds of reading."""
+    lines = [f"bad.dat 16 200/mV 16 0 0 0 0 {LEADS[k % 12]}" for k in range(100)]
+    record(tmp_path, first="many 100 500 14", lines=lines, name="many")
+    whole = record(tmp_path, first="whole/100 100 500 1400", lines=["many 14"] * 100, name="whole")
+    assert "name more than 1500 signals" in refusal(whole)
+
+
+def test_compressed_flat_lines_of_a_day(tmp_path):
+    """An hour of them is some ten kilobytes; one that claims a day would take half a minute."""
+    path = record(tmp_path, form="516", first="bad 12 500 43200000")
+    assert "it is cut off" in refusal(path)
+
+
+def test_a_wfdb_pause_as_long_as_memory_allows(tmp_path):
+    """Forty minutes of twelve leads are 120 MB of NaN, from a header alone."""
+    layout = [f"~ 0 200/mV 16 0 0 0 0 {lead}" for lead in LEADS]
+    record(tmp_path)
+    record(tmp_path, first="layout 12 500 0", lines=layout, name="layout")
+    lines = ["layout 0", "bad 120", "~ 1199880"]
+    path = record(tmp_path, first="whole/3 12 500 1200000", lines=lines, name="whole")
+    assert "more of the record is missing than was recorded" in refusal(path)
+
+
 def test_two_wfdb_records_that_are_each_other_s_segments(tmp_path):
     record(tmp_path, first="one/1 12 500 120", lines=["two 120"], name="one")
     two = record(tmp_path, first="two/1 12 500 120", lines=["one 120"], name="two")
@@ -226,10 +251,11 @@ def of_lead_i(keyword: str, value: object) -> Callable[[Dataset], object]:
     ("change", "says"),
     [
         (of_group("NumberOfWaveformSamples", 4_000_000_000), "samples of 12 channels in"),
-        (of_group("NumberOfWaveformChannels", 65_535), "samples of 65535 channels in"),
+        (of_group("NumberOfWaveformChannels", 65_535), "120 samples of 65535 channels in 15728400"),
         (of_group("NumberOfWaveformChannels", 0), "describes 12 channels and holds 0"),
         (of_group("NumberOfWaveformChannels", 4), "describes 12 channels and holds 4"),
-        (of_group("NumberOfWaveformSamples", 121), "states 121 samples of"),
+        (of_group("NumberOfWaveformSamples", 121), "in 2904 bytes and holds 2880"),
+        (of_group("NumberOfWaveformSamples", None), "states no number of waveform samples"),
         (of_group("SamplingFrequency", "0"), "states 0 samples a second"),
         (of_group("SamplingFrequency", "1e9"), "states 1e+09 samples a second"),
         (of_group("SamplingFrequency", "-500"), "states -500 samples a second"),
@@ -258,6 +284,21 @@ def test_a_packed_dicom_object_that_claims_gigabytes(tmp_path):
     path.write_bytes(content[:meta] + bomb)
     assert path.stat().st_size < 400_000
     assert "holds more than 100 MB" in refusal(path)
+
+
+def test_what_pydicom_remarks_is_not_passed_on(tmp_path):
+    """A comma in an identifier: pydicom warns and reads on, and so does the reader, unheard."""
+    path = dicom(tmp_path, lambda group: None)
+    content = path.read_bytes()
+    path.write_bytes(content.replace(b"1.2.840.10008.1.2.1\0", b"1.2,840.10008.1.2.1\0", 1))
+    reading = read_watched(path)
+    assert (reading.faults, reading.refusal) == ([], None)
+
+
+def test_a_unit_of_control_characters_is_shown_as_text(tmp_path):
+    unit = coded("uV\x08\x1b[2Jxxxx", "UCUM", "microvolt")
+    said = refusal(dicom(tmp_path, of_lead_i("ChannelSensitivityUnitsSequence", unit)))
+    assert "lead I is stored in the unit 'uV??[2Jxxxx', which is no voltage" in said
 
 
 def test_sequences_within_sequences(tmp_path):
@@ -380,13 +421,13 @@ def two_tables_in_turn() -> dict[int, bytes]:
         (PLAIN | {3: spans(1, 4_000_000_000)}, "runs from sample 1 to 4000000000"),
         (PLAIN | {3: spans(100, 1)}, "runs from sample 100 to 1"),
         (PLAIN | {3: spans(0, 99)}, "runs from sample 0 to 99"),
-        (PLAIN | {3: spans(1, 50_000_000)}, "50000000 samples in"),
+        (PLAIN | {3: spans(1, 50_000_000)}, "a lead of 50000000 samples has only"),
         (CODED | {3: spans(1, 50_000_000)}, "400000000 compressed samples, too many"),
         (PLAIN | {3: b"\0\0" + PLAIN[3][2:]}, "states 0 leads"),
         (PLAIN | {6: PLAIN[6][:2] + b"\0\0" + PLAIN[6][4:]}, "0 us a sample"),
         (PLAIN | {6: PLAIN[6][:2] + b"\1\0" + PLAIN[6][4:]}, "states 1e+06 samples a second"),
         (PLAIN | {6: PLAIN[6][:2] + b"\xff\xff" + PLAIN[6][4:]}, "states 15.259 samples"),
-        (CODED | {2: struct.pack("<H", 60_000) + CODED[2][2:] * 5000}, "60000 tables"),
+        (CODED | {2: struct.pack("<H", 60_000) + CODED[2][2:] * 5000}, "60000 code tables"),
         (two_tables_in_turn(), "more switches of the table than samples"),
         (SUBTRACTED | {4: struct.pack("<HHH", 40, 11, 60_000) + bytes(840_000)}, "60000 beats"),
         (
@@ -444,6 +485,15 @@ def test_more_compressed_samples_than_are_decoded_in_a_second(tmp_path, monkeypa
 
 
 # Annotated ECGs: bombs of XML stand in test_aecg_package.py
+
+
+def test_sets_within_sets_of_an_annotated_ecg(tmp_path):
+    """Eighty-five sets around the same sequences: each must not go through all of them again."""
+    sequences = aecg.times() + aecg.sequence("MDC_ECG_LEAD_V1", "<value/>") * 3000
+    nested = "<sequenceSet>" * 85 + sequences + "</sequenceSet>" * 85
+    path = tmp_path / "bad.xml"
+    path.write_bytes(aecg.annotated_ecg(aecg.series(nested)))
+    assert "none of the twelve leads" in refusal(path)
 
 
 def test_an_entity_within_the_samples_of_an_annotated_ecg(tmp_path):

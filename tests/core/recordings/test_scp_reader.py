@@ -128,7 +128,7 @@ def changed(record: bytes, at: int, new: bytes) -> bytes:
         (lambda made: scp.record(made | {2: struct.pack("<HH", 1, 60000)}), "cut off"),
         (
             lambda made: scp.record(made | {3: changed(made[3], 6, struct.pack("<I", 99_000_000))}),
-            "99000000 samples in",
+            "a lead of 99000000 samples has only",
         ),
     ],
 )

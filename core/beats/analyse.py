@@ -28,6 +28,7 @@ FEWEST_BEATS = 3
 FEWEST_SPIKES = 3
 QRS_HALF_S = 0.07  # half of the stretch that is compared and aligned
 LARGEST_LAG_S = 0.06
+LARGEST_LATER_LAG_S = 0.012  # once the beats lie on one another
 ROUNDS = 3
 # Window of the representative beat: these shares of the usual interval, at most so long.
 BEFORE_SHARE, LONGEST_BEFORE_S = 0.38, 0.40
@@ -157,7 +158,9 @@ class _Rounds:
         self.before = round(min(BEFORE_SHARE * usual_rr_s, LONGEST_BEFORE_S) * rate)
         self.after = round(min(AFTER_SHARE * usual_rr_s, LONGEST_AFTER_S) * rate)
         self.half = min(round(QRS_HALF_S * rate), self.before, self.after - 1)
-        self.lag = max(2, round(LARGEST_LAG_S * rate))
+        self.lag, self.later_lag = (
+            max(2, round(lag_s * rate)) for lag_s in (LARGEST_LAG_S, LARGEST_LATER_LAG_S)
+        )
         self.centres = centres.astype(np.float64)
         self.signal = raw
 
@@ -165,7 +168,7 @@ class _Rounds:
         qrs = cut_windows(self.raw, self._whole(), self.half, self.half)
         template = qrs[dominant_beat(qrs[:, self.telling])]
         for _ in range(2):
-            self._align(template)
+            self._align(template, self.lag)
             qrs = self._aligned(self.half, self.half, np.arange(self.centres.size))
             alike = self._likeness(qrs, template) >= SAME_SHAPE
             if not alike.any():
@@ -181,7 +184,7 @@ class _Rounds:
             representative = representative_of(aligned)
             self._take_out_wander(representative)
             template = representative[:, self.before - self.half : self.before + self.half]
-            self._align(template)
+            self._align(template, self.later_lag)
         self._take_out_mains(representative, used)
 
         aligned = self._aligned(self.before, self.after, used)
@@ -214,12 +217,12 @@ class _Rounds:
         windows = cut_windows(self.signal, whole, before, after)
         return shifted(windows, self.centres[chosen] - whole)
 
-    def _align(self, template: NDArray[np.float64]) -> None:
+    def _align(self, template: NDArray[np.float64], lag: int) -> None:
         """Move every centre to where the template fits best."""
         whole = self._whole()
-        reach = self.half + self.lag
+        reach = self.half + lag
         windows = cut_windows(self.signal[self.telling], whole, reach, reach)
-        moved = whole + lags_to_template(windows, template[self.telling], self.lag)
+        moved = whole + lags_to_template(windows, template[self.telling], lag)
         self.centres = np.clip(moved, 0, self.n_samples - 1)
 
     def _likeness(

@@ -10,6 +10,7 @@ the result is that of fitting beats and hum at once.
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,6 +21,8 @@ KNOT_S = 4.0
 # Hum stands out when the fit explains this many times what it explains beside the mains.
 STANDS_OUT = 6.0
 BESIDE_HZ = (-5.0, -3.0, 3.0, 5.0)
+# Where even the plain fit, which beats and hum share, stands out by less than this, none is there.
+WORTH_A_LOOK = 2.0
 
 
 def estimate_mains(
@@ -47,33 +50,53 @@ def estimate_mains(
     """
     hum = np.zeros_like(residual_mv)
     here = ~foreign
+
+    def stand_out(fits: list[_Fit], times: float) -> NDArray[np.bool_]:
+        """In which leads the first fit explains so much more than the others usually do."""
+        beside = np.median([fit.explained for fit in fits[1:]], axis=0)
+        return np.asarray(fits[0].explained > times * beside)
+
     for mains_hz in MAINS_HZ:
         if mains_hz + max(BESIDE_HZ) >= 0.5 * sampling_rate_hz:
             continue
-        at_mains, explained = _fit(residual_mv, here, less_locked_part, mains_hz, sampling_rate_hz)
-        beside = [
-            _fit(residual_mv, here, less_locked_part, mains_hz + away, sampling_rate_hz)[1]
-            for away in BESIDE_HZ
+        bases = [
+            _basis(residual_mv.shape[1], mains_hz + away, sampling_rate_hz)
+            for away in (0.0, *BESIDE_HZ)
         ]
-        stands_out = explained > STANDS_OUT * np.median(beside, axis=0)
-        hum += np.where(stands_out[:, None], at_mains, 0.0)
+        plain = [_fit(residual_mv, here, basis, basis) for basis in bases]
+        if not stand_out(plain, WORTH_A_LOOK).any():
+            continue
+        fits = [_fit(residual_mv, here, basis, less_locked_part(basis)) for basis in bases]
+        hum += np.where(stand_out(fits, STANDS_OUT)[:, None], fits[0].wave_mv, 0.0)
     return hum
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Fit:
+    """The fitted wave of every lead, shape (n_leads, n_samples), and the power it explains."""
+
+    basis: NDArray[np.float64]
+    coefficients: NDArray[np.float64]
+    explained: NDArray[np.float64]
+
+    @property
+    def wave_mv(self) -> NDArray[np.float64]:
+        return np.asarray(self.coefficients.T @ self.basis)
 
 
 def _fit(
     residual_mv: NDArray[np.float64],
     here: NDArray[np.bool_],
-    less_locked_part: Callable[[NDArray[np.float64]], NDArray[np.float64]],
-    hz: float,
-    rate_hz: float,
-) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
-    """The fitted wave of every lead, and the power that it explains."""
-    basis = _basis(residual_mv.shape[1], hz, rate_hz)
-    seen = less_locked_part(basis)[:, here]
+    basis: NDArray[np.float64],
+    seen: NDArray[np.float64],
+) -> _Fit:
+    """Fit what is *seen* of a basis where the beats have been subtracted."""
+    seen = seen * here
     gram = seen @ seen.T
-    coefficients = np.linalg.lstsq(gram, seen @ residual_mv[:, here].T, rcond=1e-10)[0]
+    solved = np.linalg.lstsq(gram, seen @ residual_mv.T, rcond=1e-10)[0]
+    coefficients = np.asarray(solved, dtype=np.float64)
     explained = np.einsum("kl,km,ml->l", coefficients, gram, coefficients)
-    return coefficients.T @ basis, explained
+    return _Fit(basis, coefficients, explained)
 
 
 def _basis(n_samples: int, hz: float, rate_hz: float) -> NDArray[np.float64]:

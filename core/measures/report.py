@@ -266,7 +266,8 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
     # A lead that was lost on its way contradicts the others; one that was recorded flat does not.
     flat = None
     lost = any(grade.reason == SAMPLES_MISSING for grade in quality[:3])
-    if not lost and limb_lead_contradiction_mv(recording) is None:
+    contradiction_mv = limb_lead_contradiction_mv(recording)
+    if not lost and contradiction_mv is None:
         flat = right_leg_interchange(beat_mv[:3, first : fiducials.t_offset + 1])
     faults = find_faults(
         TWELVE_LEADS,
@@ -288,7 +289,10 @@ def measure(recording: Recording, settings: Settings | None = None) -> Recording
         noise_uv=1000.0 * np.sqrt(np.mean(residual_mv**2, axis=(0, 2))),
         quality=quality,
         rr_s=float(np.mean(np.diff([beat.r_time_s for beat in analysis.beats]))),
-        notices=(*recording.notices, *_notices(recording, analysis, quality, points, faults, flat)),
+        notices=(
+            *recording.notices,
+            *_notices(analysis, quality, points, faults, flat, contradiction_mv),
+        ),
         further=measure_further_leads(recording, analysis, points),
     )
 
@@ -308,12 +312,12 @@ def _p_wave_mv(beat_mv: NDArray[np.float64], points: Points) -> NDArray[np.float
 
 
 def _notices(
-    recording: Recording,
     analysis: BeatAnalysis,
     quality: tuple[LeadQuality, ...],
     points: Points,
     faults: tuple[Fault, ...],
     flat: tuple[str, str] | None,
+    contradiction_mv: float | None,
 ) -> tuple[Notice, ...]:
     found = []
     left_out = [beat.why_not for beat in analysis.beats if beat.why_not is not None]
@@ -326,7 +330,6 @@ def _notices(
     disturbed = [fault for fault in faults if fault.lead not in unusable_leads]
     if disturbed:
         found.append(say.leads_disturbed([(f.kind, f.lead, f.size_mv) for f in disturbed]))
-    contradiction_mv = limb_lead_contradiction_mv(recording)
     if contradiction_mv is not None:
         found.append(say.limb_leads_disagree(contradiction_mv))
     if points.fiducials.p_onset is None:

@@ -8,7 +8,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtCore import QPointF, QRectF, QSizeF, Qt
 from PySide6.QtGui import QPainter, QPen
 
 from app.drawing.lead_plots import CENTRE
@@ -22,6 +22,7 @@ SCALE_BAR_MM = 50.0
 STERNUM_HALF_MM = 18.0
 INTERSPACE_MM = 29.0
 RADIUS = 5.5
+DISC = 0.85 * RADIUS
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,12 +57,28 @@ def draw_chest_map(
     painter.save()
     painter.setClipRect(rect)
     _draw_landmarks(painter, layout, sites, style)
-    labels: list[QRectF] = []
+    electrodes = comparison.placement.electrodes
+    shifts = {
+        electrode: shift
+        for electrode in sites
+        if (shift := electrodes.get(electrode)) is not None and shift.worth_naming()
+    }
+    for electrode, shift in shifts.items():
+        _draw_shift(painter, layout, sites[electrode], shift, style)
     for electrode, site in sites.items():
-        shift = comparison.placement.electrodes.get(electrode)
-        _draw_electrode(painter, layout, electrode, site, shift, style, labels)
+        _draw_site(painter, layout.at(*site), electrode, style)
         if electrode == selected:
             _ring(painter, layout.at(*site), style)
+    discs = {name: _estimate(layout, sites[name], shift) for name, shift in shifts.items()}
+    taken = [
+        box
+        for electrode, site in sites.items()
+        for box in _boxes_of_site(layout.at(*site), electrode, style)
+    ]
+    taken += [_around(there, DISC * style.unit) for there in discs.values()]
+    labels: list[QRectF] = []
+    for electrode, shift in shifts.items():
+        labels.append(_name_shift(painter, rect, discs[electrode], shift, style, taken, labels))
     _draw_scale_bar(painter, rect, scale, style)
     painter.restore()
 
@@ -97,67 +114,102 @@ def _draw_landmarks(
         draw_text(painter, box, name, font, palette.colour("soft_ink"), CENTRE)
 
 
-def _draw_electrode(
+def _estimate(layout: _Layout, site: tuple[float, float], shift: ElectrodeShift) -> QPointF:
+    """Where the electrode is estimated to have been."""
+    return layout.at(site[0] + shift.left_mm.estimate, site[1] + shift.up_mm.estimate)
+
+
+def _draw_shift(
     painter: QPainter,
     layout: _Layout,
-    electrode: str,
     site: tuple[float, float],
-    shift: ElectrodeShift | None,
+    shift: ElectrodeShift,
     style: Style,
-    labels: list[QRectF],
 ) -> None:
-    palette, unit, at = style.palette, style.unit, layout.at
-    here = at(*site)
-    radius = RADIUS * unit
-    if shift is not None and shift.worth_naming():
-        there = at(site[0] + shift.left_mm.estimate, site[1] + shift.up_mm.estimate)
-        middle = at(
-            site[0] + (shift.left_mm.low + shift.left_mm.high) / 2,
-            site[1] + (shift.up_mm.low + shift.up_mm.high) / 2,
-        )
-        half = (
-            (shift.left_mm.high - shift.left_mm.low) / 2 * layout.scale,
-            (shift.up_mm.high - shift.up_mm.low) / 2 * layout.scale,
-        )
-        later = palette.colour("later")
-        painter.setPen(QPen(later, 0.8 * unit))
-        faint = palette.colour("later")
-        faint.setAlphaF(0.13)
-        painter.setBrush(faint)
-        painter.drawEllipse(middle, *half)
-        painter.setPen(QPen(later, 1.6 * unit))
-        painter.drawLine(here, there)
-        painter.setPen(Qt.PenStyle.NoPen)
-        painter.setBrush(later)
-        painter.drawEllipse(there, radius * 0.85, radius * 0.85)
-        _name_shift(painter, there, shift, style, labels)
+    """The estimate as a disc, its range as an ellipse, and the way from the site."""
+    unit, later = style.unit, style.palette.colour("later")
+    there, left, up = _estimate(layout, site, shift), shift.left_mm, shift.up_mm
+    middle = layout.at(site[0] + (left.low + left.high) / 2, site[1] + (up.low + up.high) / 2)
+    half = [(size.high - size.low) / 2 * layout.scale for size in (left, up)]
+    faint = style.palette.colour("later")
+    faint.setAlphaF(0.13)
+    painter.setPen(QPen(later, 0.8 * unit))
+    painter.setBrush(faint)
+    painter.drawEllipse(middle, *half)
+    painter.setPen(QPen(later, 1.6 * unit))
+    painter.drawLine(layout.at(*site), there)
+    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setBrush(later)
+    painter.drawEllipse(there, DISC * unit, DISC * unit)
+
+
+def _draw_site(painter: QPainter, here: QPointF, electrode: str, style: Style) -> None:
+    """The ring of an electrode's site, and its name under it."""
+    palette, unit = style.palette, style.unit
     painter.setPen(QPen(palette.colour("earlier"), 2.0 * unit))
     painter.setBrush(palette.colour("card"))
-    painter.drawEllipse(here, radius, radius)
+    painter.drawEllipse(here, RADIUS * unit, RADIUS * unit)
+    _, name = _boxes_of_site(here, electrode, style)
     font = style.font(style.caption, bold=True)
-    width = 30 * unit
-    box = QRectF(here.x() - width / 2, here.y() + radius + 2 * unit, width, style.caption * 1.35)
-    draw_text(painter, box, electrode, font, palette.colour("ink"), CENTRE)
+    draw_text(painter, name, electrode, font, palette.colour("ink"), CENTRE)
+
+
+def _boxes_of_site(here: QPointF, electrode: str, style: Style) -> tuple[QRectF, QRectF]:
+    """What the ring and the name of a site take."""
+    unit, font = style.unit, style.font(style.caption, bold=True)
+    width, top = text_width(electrode, font) + 2 * unit, here.y() + (RADIUS + 2) * unit
+    name = QRectF(here.x() - width / 2, top, width, style.caption * 1.35)
+    return _around(here, RADIUS * unit), name
+
+
+def _around(middle: QPointF, radius: float) -> QRectF:
+    return QRectF(middle.x() - radius, middle.y() - radius, 2 * radius, 2 * radius)
 
 
 def _name_shift(
     painter: QPainter,
+    rect: QRectF,
     there: QPointF,
     shift: ElectrodeShift,
     style: Style,
+    taken: list[QRectF],
     labels: list[QRectF],
-) -> None:
-    """How far, over the disc and clear of the labels that stand already."""
+) -> QRectF:
+    """How far, beside its own disc and as clear as can be of what stands already; the box."""
     certain = shift.worth_naming().values()
     text = f"{plain(math.hypot(*(size.estimate for size in certain)))} mm"
     font = style.font(style.caption, bold=True)
-    width, height = text_width(text, font) + 4 * style.unit, style.caption * 1.3
-    top = there.y() - (RADIUS + 3) * style.unit - height
-    box = QRectF(there.x() - width / 2, top, width, height)
-    while any(box.intersects(label) for label in labels):
-        box.translate(0, -height)
-    labels.append(box)
+    size = QSizeF(text_width(text, font) + 4 * style.unit, style.caption * 1.3)
+
+    def hidden(box: QRectF) -> float:
+        # Another distance, or the map's edge, would hide it; a ring or a name is only crowded.
+        inside = _shared(box, rect)
+        outside = box.width() * box.height() - inside
+        hides = 10 * (outside + sum(_shared(box, label) for label in labels))
+        # Rounded: what the arithmetic leaves over must not decide between clear places.
+        return round(hides + sum(_shared(box, one) for one in taken), 3)
+
+    box = min(_beside(there, size, (DISC + 3) * style.unit), key=hidden)
     draw_text(painter, box, text, font, style.palette.colour("ink"), CENTRE)
+    return box
+
+
+def _beside(there: QPointF, size: QSizeF, away: float) -> list[QRectF]:
+    """Places for a label next to a disc, the best first: over it, under it, at its sides."""
+    width, height = size.width(), size.height()
+    over, under = there.y() - away - height, there.y() + away
+    slides = [0.0, 0.25, -0.25, 0.5, -0.5]
+    corners = [(there.x() + (slide - 0.5) * width, over) for slide in slides]
+    corners += [(there.x() + (slide - 0.5) * width, under) for slide in slides]
+    level = there.y() - height / 2
+    corners += [(there.x() + away, level), (there.x() - away - width, level)]
+    return [QRectF(QPointF(*corner), size) for corner in corners]
+
+
+def _shared(one: QRectF, other: QRectF) -> float:
+    """Area that two boxes have in common."""
+    common = one.intersected(other)
+    return common.width() * common.height()
 
 
 def _ring(painter: QPainter, at: QPointF, style: Style) -> None:

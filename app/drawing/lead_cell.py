@@ -94,7 +94,7 @@ def _changes(comparison: Comparison, lead: str, fits: Callable[[str], bool]) -> 
     """The changes of ST and T in mV, in the same form in all cells of one width."""
     measures = comparison.leads[lead].measures
     st, t = signed(measures["st_mv"].change), signed(measures["t_mv"].change)
-    forms = (f"ST{NARROW}{{}} · T{NARROW}{{}}", "ST{} T{}")
+    forms = (f"ST{NARROW}{{}} · T{NARROW}{{}}", f"ST{NARROW}{{}} T{NARROW}{{}}", "ST{} T{}")
     usual = signed(-0.88)
     form = next((form for form in forms if fits(form.format(usual, usual))), forms[-1])
     return form.format(st, t)

@@ -30,7 +30,7 @@ def draw_grid(painter: QPainter, scale: Scale, style: Style, *, every: int = 1) 
     for time in np.arange(np.ceil(scale.first_ms / step_ms), scale.last_ms / step_ms) * step_ms:
         x = float(scale.x(time))
         painter.drawLine(QPointF(x, scale.rect.top()), QPointF(x, scale.rect.bottom()))
-    for level in np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv:
+    for level in _multiples(scale, step_mv):
         y = float(scale.y(level))
         painter.drawLine(QPointF(scale.rect.left(), y), QPointF(scale.rect.right(), y))
     painter.setPen(QPen(palette.colour("line"), unit))
@@ -50,12 +50,25 @@ def _round_step(least_mv: float) -> float:
     return float(next(decade * m for m in (1.0, 2.0, 5.0, 10.0) if decade * m >= least_mv))
 
 
+def _level_step(scale: Scale, line: float) -> float:
+    """A round step between the numbers of an axis, which keeps them apart but for two of them."""
+    most = min(MOST_LEVELS, scale.rect.height() / (1.15 * line))
+    step_mv = _round_step((scale.high_mv - scale.low_mv) / most)
+    # The next finer round step is 0.4 or 0.5 of it.
+    return step_mv if _multiples(scale, step_mv).size > 1 else _round_step(0.4 * step_mv)
+
+
+def _multiples(scale: Scale, step_mv: float) -> NDArray[np.float64]:
+    """Voltages of a plot that are whole steps."""
+    return np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv
+
+
 def draw_axes(painter: QPainter, scale: Scale, style: Style) -> None:
     """Numbers to the left of a plot and below it: mV, and ms from R."""
     font, colour = style.font(style.caption), style.palette.colour("soft_ink")
     left_room, line = axis_room(style)
-    step_mv = _round_step((scale.high_mv - scale.low_mv) / MOST_LEVELS)
-    levels = np.arange(np.ceil(scale.low_mv / step_mv), scale.high_mv / step_mv) * step_mv
+    step_mv = _level_step(scale, line)
+    levels = _multiples(scale, step_mv)
     for level in levels.tolist():
         digits = 1 if level and step_mv < 1.0 else 0
         text = f"{signed(level, digits)}{NARROW}mV"

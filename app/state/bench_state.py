@@ -40,7 +40,7 @@ class BenchState(QObject):
         self.refusal = ""
         self.liftable_stops: tuple[str, ...] = ()
         self.progress = 0.0
-        self.progress_words = ""
+        self.steps: list[str] = []
         self.lead = "V2"
 
     @property
@@ -52,6 +52,11 @@ class BenchState(QObject):
     def has_pair(self) -> bool:
         """Whether both recordings are chosen."""
         return self.earlier is not None and self.later is not None
+
+    @property
+    def progress_words(self) -> str:
+        """The step that is being done, in words."""
+        return self.steps[-1] if self.steps else ""
 
     def choose(self, earlier: Path | None, later: Path | None) -> None:
         """Choose recordings; a comparison of others is put away.
@@ -84,13 +89,15 @@ class BenchState(QObject):
     def begin(self) -> None:
         """The comparison of the chosen pair has started."""
         self.comparison = None
-        self.progress, self.progress_words = 0.0, "reading"
+        self.progress, self.steps = 0.0, ["reading the recordings"]
         self._enter(Phase.WORKING)
         self.progress_changed.emit()
 
     def advance(self, share: float, words: str) -> None:
         """The comparison has come so far."""
-        self.progress, self.progress_words = share, words
+        self.progress = share
+        if words != self.progress_words:
+            self.steps.append(words)
         self.progress_changed.emit()
 
     def finish(self, comparison: Comparison) -> None:

@@ -32,6 +32,7 @@ from app.views.start_view import StartView
 from app.views.theme import BODY, current_palette
 from app.views.verdict_panel import VerdictPanel
 from app.views.wall_scroll import WallScroll
+from app.views.working_view import WorkingView
 from core import Settings
 from core.comparison.results import Comparison
 from core.errors import TableIncomplete
@@ -68,7 +69,7 @@ class BenchWindow(QMainWindow):
     def _lay_out(self) -> None:
         self.verdict = VerdictPanel(self.state)
         self.wall, self.lead_depth = LeadWall(self.state), LeadDepth(self.state)
-        self.start_view = StartView()
+        self.start_view, self._working = StartView(), WorkingView(self.state)
         self.swap_button = QPushButton("⇄")
         self.swap_button.setFixedWidth(34)
         self.swap_button.setToolTip("Swap earlier and later")
@@ -97,6 +98,7 @@ class BenchWindow(QMainWindow):
         across.addLayout(side, 29)
         self.middle = QStackedWidget()
         self.middle.addWidget(self.start_view)
+        self.middle.addWidget(self._working)
         self.middle.addWidget(evidence)
         self._evidence = evidence
 
@@ -122,10 +124,8 @@ class BenchWindow(QMainWindow):
 
     def _follow_phase(self) -> None:
         state = self.state
-        self.middle.setCurrentWidget(
-            self._evidence if state.comparison is not None else self.start_view
-        )
-        self.start_view.setVisible(state.phase is not Phase.WORKING and not state.comparison)
+        pages = {Phase.WORKING: self._working, Phase.JUDGED: self._evidence}
+        self.middle.setCurrentWidget(pages.get(state.phase, self.start_view))
         self.report_button.setEnabled(state.has_comparison)
         self.swap_button.setEnabled(state.has_pair)
         self.actions_list.refresh()

@@ -21,9 +21,29 @@ def ask_recording(parent: QWidget, title: str) -> Path | None:
 
 
 def ask_file_to_write(parent: QWidget, title: str, suggestion: str, kind: str) -> Path | None:
-    """Ask where to write."""
-    name, _ = QFileDialog.getSaveFileName(parent, title, suggestion, kind)
-    return Path(name) if name else None
+    """Ask where to write; a name without the suggestion's ending is given it."""
+    ending = Path(suggestion).suffix
+    dialog = QFileDialog(parent, title, "", kind)
+    dialog.setAcceptMode(QFileDialog.AcceptMode.AcceptSave)
+    # The dialog itself asks before an older file is written over, and with the ending.
+    dialog.setDefaultSuffix(ending.lstrip("."))
+    dialog.selectFile(suggestion)
+    accepted = dialog.exec() == QDialog.DialogCode.Accepted
+    chosen = dialog.selectedFiles()
+    dialog.deleteLater()
+    if not accepted or not chosen:
+        return None
+    path = Path(chosen[0])
+    if path.suffix.lower() == ending:
+        return path
+    # To the dialog anything behind a dot is an ending, such as the year of a date.
+    whole = path.with_name(path.name + ending)
+    return whole if not whole.exists() or _may_replace(parent, title, whole) else None
+
+
+def _may_replace(parent: QWidget, title: str, path: Path) -> bool:
+    question = f"{path.name} is there already. Replace it?"
+    return QMessageBox.question(parent, title, question) == QMessageBox.StandardButton.Yes
 
 
 def ask_unstated(parent: QWidget, error: TableIncomplete) -> Stated | None:

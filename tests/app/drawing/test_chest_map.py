@@ -1,5 +1,6 @@
 from __future__ import annotations
 
+import math
 from dataclasses import replace
 
 import numpy as np
@@ -118,6 +119,61 @@ def test_two_distances_never_lie_on_each_other(steady, style):
     assert not any(a.intersects(b) for i, a in enumerate(boxes) for b in boxes[i + 1 :])
 
 
+def disc_of(drawn: dict[str, Piece], comparison, electrode: str) -> tuple[float, float]:
+    """Where the disc of a shift lies, by where the names of the sites stand."""
+    sites, moved = comparison.placement.sites_mm, comparison.placement.electrodes[electrode]
+    px_per_mm = (middle(drawn["V6"]) - middle(drawn["V1"])) / (sites["V6"][0] - sites["V1"][0])
+    # A name's baseline lies under the middle of its ring: radius, gap, and the line's ascent.
+    ring = drawn[electrode].baseline - 5.5 - 2.0 - 12 * 1.05
+    return (
+        middle(drawn[electrode]) + moved.left_mm.estimate * px_per_mm,
+        ring - moved.up_mm.estimate * px_per_mm,
+    )
+
+
+def gap_between(at: tuple[float, float], piece: Piece) -> float:
+    """How far a point lies outside the ink of a run of text."""
+    box = piece.box
+    across = max(box.left() - at[0], 0.0, at[0] - box.right())
+    down = max(box.top() - at[1], 0.0, at[1] - box.bottom())
+    return float(np.hypot(across, down))
+
+
+CROWDED = {
+    "side by side": {"V5": shift(-1.0, -17.0), "V6": shift(-2.0, -40.0)},
+    "on each other": {"V4": shift(0.0, 20.0), "V5": shift(0.0, -21.0)},
+    "five in a row": {lead: shift(30.0 + place, 0.0) for place, lead in enumerate(CHEST_LEADS[1:])},
+    "at the edges": {"V1": shift(95.0, -60.0), "V6": shift(-80.0, 30.0)},
+}
+
+
+@pytest.mark.parametrize("shifts", CROWDED.values(), ids=CROWDED)
+def test_every_distance_stands_beside_its_own_disc(steady, style, shifts):
+    moved = steady
+    for electrode, one in shifts.items():
+        moved = with_shift(moved, electrode, one)
+    drawn = read(moved, style)
+    discs = {electrode: disc_of(drawn, moved, electrode) for electrode in shifts}
+    labels = {}
+    for electrode, one in shifts.items():
+        label = drawn[f"{np.hypot(one.left_mm.estimate, one.up_mm.estimate):.0f} mm"]
+        labels[electrode] = label
+        # px: disc and gap take 8, the line around the ink 4 more, places are known to 2.
+        assert gap_between(discs[electrode], label) <= 14.0, electrode
+        assert label.left >= MAP.left()
+        assert label.right <= MAP.right()
+    boxes = [label.box for label in labels.values()]
+    assert not any(a.intersects(b) for i, a in enumerate(boxes) for b in boxes[i + 1 :])
+
+
+def test_the_distances_of_the_medial_sample_stay_with_their_electrodes(medial, style):
+    drawn = read(medial, style)
+    for electrode in ("V5", "V6"):
+        moved = medial.placement.electrodes[electrode]
+        label = drawn[f"{abs(moved.left_mm.estimate):.0f} mm"]
+        assert gap_between(disc_of(drawn, medial, electrode), label) <= 14.0
+
+
 @pytest.mark.parametrize("far", [0.0, 150.0])
 def test_nothing_is_drawn_outside_the_map(raised, style, far):
     inside = np.zeros((300, 400), bool)
@@ -125,3 +181,14 @@ def test_nothing_is_drawn_outside_the_map(raised, style, far):
     drawn = seen(with_shift(raised, "V6", shift(far, far)), style, selected="V6")
     assert (drawn[~inside] == 255).all()
     assert (drawn[inside] != 255).any()
+
+
+def test_where_nothing_is_in_the_way_the_distance_stands_over_its_disc(raised, style):
+    drawn = read(raised, style)
+    for electrode in ("V1", "V2"):
+        moved = raised.placement.electrodes[electrode]
+        far = math.hypot(*(size.estimate for size in moved.worth_naming().values()))
+        label = drawn[f"{far:.0f} mm"]
+        disc = disc_of(drawn, raised, electrode)
+        assert label.baseline < disc[1]
+        assert middle(label) == pytest.approx(disc[0], abs=2.0)  # px, rounding

@@ -115,8 +115,10 @@ def test_a_lead_without_samples_can_be_drawn(raised, style):
 
 # From a quiet difference to a lead whose file states a gain a thousand times too small.
 @pytest.mark.parametrize("range_mv", [0.3, 0.9, 2.0, 5.0, 14.0, 60.0, 300.0, 2000.0])
-def test_a_few_numbers_stand_beside_the_axis_and_clear_of_each_other(style, range_mv):
-    scale = Scale(PLOT, -300.0, 500.0, -0.4 * range_mv, 0.6 * range_mv)
+@pytest.mark.parametrize("height", [55.0, 75.0, 120.0, 300.0])
+def test_a_few_numbers_stand_beside_the_axis_and_clear_of_each_other(style, range_mv, height):
+    plot = QRectF(PLOT.left(), PLOT.top(), PLOT.width(), height)
+    scale = Scale(plot, -300.0, 500.0, -0.4 * range_mv, 0.6 * range_mv)
     drawn = drawn_by(560, 400, lambda p: draw_axes(p, scale, style))
     levels = [piece for piece in drawn if piece.text.endswith("mV")]
     assert 2 <= len(levels) <= 7

@@ -14,10 +14,14 @@ from app.views.recording_card import RecordingCard
 from app.views.start_view import StartView
 from app.views.theme import dress, use_scheme
 from app.views.verdict_panel import VerdictPanel
+from app.views.working_view import WorkingView
 from tests.app.drawing.readback import drawn_on, pixels
 from tests.app.views.showing import PHASES, show
 
-PANELS = (RecordingCard, VerdictPanel, StartView, LeadWall, LeadDepth, ChestPanel, CautionBar)
+PANELS = (
+    *(RecordingCard, VerdictPanel, StartView, WorkingView),
+    *(LeadWall, LeadDepth, ChestPanel, CautionBar),
+)
 
 
 @pytest.mark.parametrize("scheme", [Qt.ColorScheme.Light, Qt.ColorScheme.Dark], ids=str)

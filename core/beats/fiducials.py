@@ -24,7 +24,7 @@ P_STANDS_OUT = 5.0
 P_SMOOTHING_S = 0.007
 # The QRS begins and ends where the velocity stays for so long under this share of its top plus so
 # many times its quiet level; the onset rises fast and from a P wave, the offset sinks slowly.
-ONSET_SMOOTHING_S, ONSET_SHARE, ONSET_QUIET_TIMES, ONSET_HOLD_S = 0.004, 0.05, 3.5, 0.014
+ONSET_SMOOTHING_S, ONSET_SHARE, ONSET_QUIET_TIMES, ONSET_HOLD_S = 0.004, 0.04, 3.5, 0.014
 OFFSET_SMOOTHING_S, OFFSET_SHARE, OFFSET_QUIET_TIMES, OFFSET_HOLD_S = 0.003, 0.015, 1.5, 0.016
 QUIET_QUANTILE = 0.3
 # The search begins where the velocity first reaches this share of its top, and goes so far; if it

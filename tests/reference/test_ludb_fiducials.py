@@ -20,7 +20,7 @@ PERSONS = range(1, 101)
 ALLOWED = {
     "p_onset": ((-5, 5), 10.2),
     "p_offset": ((-5, 5), 12.7),
-    "qrs_onset": ((8, 17), 6.9),
+    "qrs_onset": ((8, 17), 7.3),
     "qrs_offset": ((-6, 5), 11.6),
     "t_offset": ((-15, 5), 30.6),
 }

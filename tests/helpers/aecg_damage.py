@@ -37,7 +37,7 @@ def damaged(content: bytes, rng: np.random.Generator) -> bytes:
 
 
 def reworded(content: bytes, rng: np.random.Generator) -> bytes:
-    """A copy with one to four faults in what the XML says; it stays XML if it was.
+    """A copy with one to four faults in what the XML says; nearly all are XML still.
 
     Raises
     ------

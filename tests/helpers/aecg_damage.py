@@ -20,7 +20,12 @@ _NAMES = (
 )
 _ATTRIBUTE = re.compile(r'(?<==")[^"]*(?=")')
 _ELEMENT = re.compile(r"<(\w+)(?:\s[^<>]*)?(?:/>|>[^<>]*</\1>)")
-_WHOLE = re.compile(r"<(component|value|sequence)>.*?</\1>", re.DOTALL)
+# With all that is inside, but for another of its own name: a start and its own end.
+_WHOLE = re.compile(
+    r"<(component|value|sequence|sequenceSet|series|derivation|derivedSeries)>"
+    r"(?:(?!<\1>).)*?</\1>",
+    re.DOTALL,
+)
 _NUMBER = re.compile(r"(?<=[ >])-?\d+(?=[ <])")
 
 
@@ -28,6 +33,17 @@ def damaged(content: bytes, rng: np.random.Generator) -> bytes:
     """A copy with faults: half of the copies in their bytes, half in what the XML says."""
     if rng.random() < 0.5:
         return mutated(content, rng)
+    return reworded(content, rng)
+
+
+def reworded(content: bytes, rng: np.random.Generator) -> bytes:
+    """A copy with one to four faults in what the XML says; nearly all are XML still.
+
+    Raises
+    ------
+    UnicodeDecodeError
+        If the content is no UTF-8.
+    """
     text = content.decode()
     for _ in range(int(rng.integers(1, 5))):
         text = _FAULTS[int(rng.integers(len(_FAULTS)))](text, rng)

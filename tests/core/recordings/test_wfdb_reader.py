@@ -98,3 +98,27 @@ def test_spoilt_headers_are_refused_in_one_line(tmp_path, counts, spoilt, reason
         read_recording(header)
     assert "\n" not in str(caught.value)
     assert str(tmp_path) not in str(caught.value)
+
+
+def test_leads_of_different_rates_in_one_file(tmp_path):
+    """Limb leads at 250 Hz, chest leads at 500 Hz: two samples of theirs in every frame."""
+    limb_s, both_s = np.arange(1000) / 250.0, np.arange(2000) / 500.0
+    chest = np.random.default_rng(9).integers(-900, 900, (1000, 6, 2))
+    limb = np.rint(800 * np.sin(2 * np.pi * 3 * limb_s))
+    frames = np.column_stack([limb, -limb, chest.reshape(1000, 12)])
+    frames.astype("<i2").tofile(tmp_path / "mixed.dat")
+    leads = [f"mixed.dat 16 1000(0)/mV 16 0 0 0 0 {lead}" for lead in ("I", "II")]
+    leads += [f"mixed.dat 16x2 1000(0)/mV 16 0 0 0 0 V{k}" for k in range(1, 7)]
+    (tmp_path / "mixed.hea").write_text("\n".join(["mixed 8 250 1000", *leads]) + "\n")
+
+    recording = read_recording(tmp_path / "mixed")
+    assert (recording.sampling_rate_hz, recording.n_samples) == (500.0, 2000)
+    np.testing.assert_allclose(
+        recording.signal_mv[:, 6:], chest.transpose(0, 2, 1).reshape(2000, 6) / 1000, atol=1e-12
+    )
+    # Brought to 500 Hz: a step of rounding, and the ends, where nothing is known beyond.
+    inside = slice(50, -50)
+    wave = 0.8 * np.sin(2 * np.pi * 3 * both_s)
+    np.testing.assert_allclose(recording.signal_mv[inside, 0], wave[inside], atol=0.001)
+    part = read_recording(tmp_path / "mixed", stretch_s=(1.0, 3.0))
+    np.testing.assert_array_equal(part.signal_mv[:, 6:], recording.signal_mv[500:1500, 6:])

@@ -47,14 +47,7 @@ def build_parser() -> argparse.ArgumentParser:
     )
     parser.add_argument("--version", action="version", version=f"samespot {program_version()}")
     commands = parser.add_subparsers(metavar="COMMAND")
-    for module in (
-        open_command,
-        compare_command,
-        measure_command,
-        move_command,
-        export_command,
-        demo_command,
-    ):
+    for module in _COMMANDS:
         module.add_to(commands)
     parser.set_defaults(run=open_command.run, earlier=None, later=None)
     return parser

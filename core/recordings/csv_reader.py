@@ -33,6 +33,7 @@ from core.recordings.csv_times import TimeError, agree, decimals_of, rate_of_tim
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.leads import LIMB_LEADS, can_derive_limb_leads
 from core.recordings.recording import Recording, Source
+from core.recordings.refusing import refusing
 from core.recordings.shown import shown
 from core.wording import notices as say
 
@@ -82,22 +83,20 @@ def read_csv(
         If the file cannot be opened.
     """
     name = path.name
-    try:
-        with path.open(encoding=encoding_of(path)) as stream:
-            table = read_table(name, stream)
+    unreadable = RecordingError(
+        f"{name}: the table cannot be read. Save it again as plain text in UTF-8, with a header "
+        "row of lead names and one row a sample."
+    )
+    with refusing(unreadable):
+        try:
+            with path.open(encoding=encoding_of(path)) as stream:
+                table = read_table(name, stream)
+        except UnicodeError as error:
+            raise RecordingError(
+                f"{name}: the file begins as UTF-16 text and does not go on as such. "
+                "Export the table again as plain text in UTF-8."
+            ) from error
         return _recording(path, table, unit, sampling_rate_hz)
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except UnicodeError as error:
-        raise RecordingError(
-            f"{name}: the file begins as UTF-16 text and does not go on as such. "
-            "Export the table again as plain text in UTF-8."
-        ) from error
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise RecordingError(
-            f"{name}: the table cannot be read. Save it again as plain text in UTF-8, with a "
-            "header row of lead names and one row a sample."
-        ) from error
 
 
 def _recording(path: Path, table: Table, unit: str | None, given_hz: float | None) -> Recording:
@@ -225,8 +224,8 @@ def _unit_mv(name: str, column: LeadColumn, stated: str | None, given: str | Non
         )
     if given_mv is not None and given_mv != stated_mv:
         raise RecordingError(
-            f"{name}: the file states '{shown(stated)}' for lead {column.lead}, not '{given}'. "
-            "Correct the file, or leave out --unit."
+            f"{name}: the file states '{shown(stated)}' for lead {column.lead}, not "
+            f"'{shown(given or '')}'. Correct the file, or give no unit."
         )
     return stated_mv
 

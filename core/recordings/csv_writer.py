@@ -4,13 +4,11 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
 
 from core.errors import RecordingError
-from core.files import write_atomically
 from core.recordings.all_leads import all_leads_mv, steps_of_all_leads
 from core.recordings.comments import said_of
 from core.recordings.recording import Recording
@@ -18,17 +16,6 @@ from core.recordings.recording import Recording
 # A step of 1 pV is finer than any amplifier; more decimals would only be rounding noise.
 MOST_DECIMALS = 9
 _ROWS_AT_ONCE = 20_000
-
-
-def write_csv(recording: Recording, path: Path) -> None:
-    """Write `recording_csv` to a file, which appears whole or not at all.
-
-    Raises
-    ------
-    OSError
-        If the folder cannot be written to.
-    """
-    write_atomically(path, recording_csv(recording))
 
 
 def recording_csv(recording: Recording) -> bytes:

@@ -6,6 +6,7 @@ pydicom is imported when a file is opened.
 from __future__ import annotations
 
 import math
+from contextlib import AbstractContextManager
 from pathlib import Path
 
 from core.errors import RecordingError
@@ -18,12 +19,10 @@ from core.recordings.held import Held
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
+from core.recordings.refusing import refusing
 from core.recordings.shown import shown
 
 FORMAT_NAME = "DICOM"
-TWELVE_LEAD_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.1"
-GENERAL_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.2"
-AMBULATORY_CLASS = "1.2.840.10008.5.1.4.1.1.9.1.3"
 
 
 def looks_like_dicom(start: bytes) -> bool:
@@ -42,16 +41,17 @@ def open_dicom(path: Path) -> Held:
     OSError
         If the file cannot be opened.
     """
-    name = path.name
-    try:
-        with quietly():  # pydicom warns of much that it mends, or that is refused below
-            return _held(path)
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise RecordingError(
+    # pydicom warns of much that it mends, or that is refused
+    with _guarded(path.name), quietly():
+        return _held(path)
+
+
+def _guarded(name: str) -> AbstractContextManager[None]:
+    return refusing(
+        RecordingError(
             f"{name}: the DICOM file is damaged. Export it again from where it is stored."
-        ) from error
+        )
+    )
 
 
 def _held(path: Path) -> Held:
@@ -76,8 +76,10 @@ def _held(path: Path) -> Held:
 
     def between(start_s: float, stop_s: float) -> Recording:
         first, last = round(start_s * rate_hz), math.ceil(stop_s * rate_hz - 0.5)
+        with _guarded(name):
+            channels = group.channels(first, last)
         return assemble_recording(
-            group.channels(first, last),
+            channels,
             sampling_rate_hz=rate_hz,
             source=source,
             subject=subject,

@@ -40,6 +40,7 @@ from core.recordings.held import Held
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
+from core.recordings.refusing import refusing
 from core.recordings.shown import shown
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 
@@ -79,14 +80,10 @@ def open_edf(path: Path) -> Held:
         If the file cannot be opened.
     """
     name = path.name
-    try:
-        with quietly(), path.open("rb") as file:
-            layout = read_layout(name, file, path.stat().st_size)
-            return _held(path, file, layout)
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise damaged(name, "its header contradicts itself") from error
+    contradiction = damaged(name, "its header contradicts itself")
+    with refusing(contradiction), quietly(), path.open("rb") as file:
+        layout = read_layout(name, file, path.stat().st_size)
+        return _held(path, file, layout)
 
 
 def _held(path: Path, file: BinaryIO, layout: Layout) -> Held:
@@ -104,8 +101,10 @@ def _held(path: Path, file: BinaryIO, layout: Layout) -> Held:
     source = Source(name, layout.kind + ("+" if layout.is_plus else ""), sha256_of_files([path]))
 
     def between(start_s: float, stop_s: float) -> Recording:
+        with refusing(damaged(name, "its samples cannot be decoded")), quietly():
+            channels = _channels(path, layout, leads, starts_s, start_s, stop_s)
         return assemble_recording(
-            _channels(path, layout, leads, starts_s, start_s, stop_s),
+            channels,
             sampling_rate_hz=rate_hz,
             source=source,
             subject=subject_of(header, is_plus=layout.is_plus, recorded_at=recorded_at),

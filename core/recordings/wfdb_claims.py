@@ -65,6 +65,7 @@ def _refuse_skew(name: str, header: Any, part: Any) -> None:
 
 def _refuse_cut_off(name: str, part: Any, sizes: dict[str, int]) -> None:
     needed: dict[str, float] = {}
+    compressed: set[str] = set()
     for file_name, form, number, offset in zip(
         part.file_name, part.fmt, part.samps_per_frame, part.byte_offset, strict=True
     ):
@@ -72,14 +73,17 @@ def _refuse_cut_off(name: str, part: Any, sizes: dict[str, int]) -> None:
             continue
         begun = needed.get(file_name, float(offset or 0))
         a_sample = _BYTES_A_SAMPLE.get(form, 1 / MOST_SAMPLES_A_FLAC_BYTE)
+        if form not in _BYTES_A_SAMPLE:
+            compressed.add(file_name)
         needed[file_name] = begun + part.sig_len * (number or 1) * a_sample
     for file_name, n_bytes in needed.items():
         # Samples that share bytes may end within one.
         if sizes[file_name] < math.floor(n_bytes):
+            flat = ", or holds flat lines alone" if file_name in compressed else ""
             raise RecordingError(
                 f"{name}: the signal file {shown(file_name)} holds {sizes[file_name]} bytes and "
-                f"the header states samples of {math.floor(n_bytes)}; it is cut off. Copy the "
-                "whole record again, header and signal files."
+                f"the header states samples of {math.floor(n_bytes)}; it is cut off{flat}. Copy "
+                "the whole record again, header and signal files."
             )
 
 

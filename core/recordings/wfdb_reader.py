@@ -20,6 +20,7 @@ from core.recordings.held import Held, held_in_memory
 from core.recordings.leads import TWELVE_LEADS, lead_of_label
 from core.recordings.quietly import quietly
 from core.recordings.recording import Recording, Source
+from core.recordings.refusing import refusing
 from core.recordings.shown import shown
 from core.recordings.units import MILLIVOLTS_PER_UNIT
 from core.recordings.wfdb_claims import parts_of, refuse_claims
@@ -94,14 +95,9 @@ def open_wfdb(header_path: Path) -> Held:
 def _header(header_path: Path, paths: list[Path]) -> Any:
     import wfdb
 
-    try:
-        with quietly():
-            header: Any = wfdb.rdheader(str(header_path.with_suffix("")), rd_segments=True)
+    with refusing(_unreadable(header_path)), quietly():
+        header: Any = wfdb.rdheader(str(header_path.with_suffix("")), rd_segments=True)
         refuse_claims(header_path.name, header, paths)
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise _unreadable(header_path) from error
     return header
 
 
@@ -109,20 +105,15 @@ def _read(header_path: Path, first: int, last: int | None) -> list[Channel]:
     """The leads from one sample up to another."""
     import wfdb
 
-    try:
-        with quietly():
-            record: Any = wfdb.rdrecord(
-                str(header_path.with_suffix("")),
-                sampfrom=first,
-                sampto=last,
-                physical=True,
-                smooth_frames=False,  # leads keep their own rates
-            )
+    with refusing(_unreadable(header_path)), quietly():
+        record: Any = wfdb.rdrecord(
+            str(header_path.with_suffix("")),
+            sampfrom=first,
+            sampto=last,
+            physical=True,
+            smooth_frames=False,  # leads keep their own rates
+        )
         return list(_channels(header_path.name, record))
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except Exception as error:  # as above
-        raise _unreadable(header_path) from error
 
 
 def _unreadable(header_path: Path) -> RecordingError:

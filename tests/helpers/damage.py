@@ -6,7 +6,6 @@ The tests of the readers take a slice of them; ``python -m tests.fuzz`` takes as
 from __future__ import annotations
 
 from collections.abc import Callable
-from datetime import datetime
 from pathlib import Path
 from typing import TypeVar
 
@@ -19,11 +18,12 @@ from pydicom.uid import (
 )
 
 from core.recordings.leads import TWELVE_LEADS
-from sample_records.maker.dicom_file import waveform_group, write_dicom
+from sample_records.maker.dicom_file import waveform_group
 from tests.helpers import aecg_files as aecg
 from tests.helpers import scp_files as scp
 from tests.helpers.aecg_damage import damaged
 from tests.helpers.csv_files import small_tables
+from tests.helpers.dicom_files import write_object
 from tests.helpers.edf_files import BDF, EDF, small_file
 from tests.helpers.mutate import mutated, mutated_text
 from tests.helpers.wfdb_files import write_small_records
@@ -82,17 +82,7 @@ def dicom(folder: Path) -> Writer:
         (ExplicitVRBigEndian, [whole]),
         (DeflatedExplicitVRLittleEndian, [whole]),
     ):
-        write_dicom(
-            path,
-            groups,
-            patient_id="P-7",
-            patient_name="Tester^Tess",
-            sex="F",
-            age_years=42,
-            recorded_at=datetime(2030, 5, 6, 7, 8, 9),
-            syntax=syntax,
-        )
-        sound.append(path.read_bytes())
+        sound.append(write_object(path, *groups, syntax=syntax).read_bytes())
     return _one_file(path, sound, mutated)
 
 

@@ -17,13 +17,14 @@ import numpy as np
 import wfdb
 from numpy.typing import NDArray
 
-from core.recordings.csv_writer import write_csv
+from core.recordings.csv_writer import recording_csv
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.recording import Recording
 from core.recordings.wfdb_writer import write_wfdb
-from sample_records.maker.dicom_file import waveform_group, write_dicom
+from sample_records.maker.dicom_file import waveform_group
 from tests.helpers import aecg_files, edf_files
 from tests.helpers import scp_files as scp
+from tests.helpers.dicom_files import write_object
 from tests.helpers.synthetic import as_recording
 
 RATE_HZ = 500
@@ -85,18 +86,8 @@ def wfdb_segments(folder: Path, counts: Counts) -> Path:
 
 
 def dicom(folder: Path, counts: Counts) -> Path:
-    path = folder / "whole.dcm"
     group = waveform_group(counts.astype(np.int16), LEADS, RATE_HZ, step_uv=STEP_MV * 1000)
-    write_dicom(
-        path,
-        [group],
-        patient_id="P-7",
-        patient_name="Tester^Tess",
-        sex="F",
-        age_years=42,
-        recorded_at=STARTED,
-    )
-    return path
+    return write_object(folder / "whole.dcm", group, recorded_at=STARTED)
 
 
 def edfio_file(form: str, folder: Path, counts: Counts) -> Path:
@@ -176,7 +167,7 @@ def table(folder: Path, counts: Counts) -> Path:
 
 def exported_table(folder: Path, counts: Counts) -> Path:
     path = folder / "exported.csv"
-    write_csv(_as_read(counts), path)
+    path.write_bytes(recording_csv(_as_read(counts)))
     return path
 
 

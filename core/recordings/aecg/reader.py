@@ -16,6 +16,7 @@ from core.recordings.assemble import SAMPLING_RATE_RANGE_HZ, assemble_recording
 from core.recordings.fingerprint import sha256_of_files
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.recording import Recording, Source
+from core.recordings.refusing import refusing
 from core.recordings.size_limit import refuse_too_long
 
 FORMAT_NAME = "HL7 aECG"
@@ -48,14 +49,11 @@ def read_aecg(path: Path) -> Recording:
     ANSI/HL7 V3 ECG, R1-2004: Annotated ECG.
     """
     name = path.name
-    try:
-        return _read(path)
-    except (RecordingError, OSError, MemoryError):
-        raise
-    except AecgError as error:
-        raise RecordingError(f"{name}: the annotated ECG {error.what}. {error.mend}") from error
-    except Exception as error:  # any kind: the parser meets bytes that nobody has checked
-        raise RecordingError(f"{name}: the annotated ECG is damaged. {EXPORT_AGAIN}") from error
+    with refusing(RecordingError(f"{name}: the annotated ECG is damaged. {EXPORT_AGAIN}")):
+        try:
+            return _read(path)
+        except AecgError as error:
+            raise RecordingError(f"{name}: the annotated ECG {error.what}. {error.mend}") from error
 
 
 def _read(path: Path) -> Recording:

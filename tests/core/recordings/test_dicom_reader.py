@@ -1,15 +1,14 @@
 from __future__ import annotations
 
 from datetime import datetime
-from pathlib import Path
 
 import numpy as np
 import pytest
-from pydicom.dataset import Dataset
 
 from core import RecordingError, read_recording
 from core.recordings.leads import TWELVE_LEADS
-from sample_records.maker.dicom_file import coded, waveform_group, write_dicom
+from sample_records.maker.dicom_file import coded, waveform_group
+from tests.helpers.dicom_files import write_object
 
 LEADS = list(TWELVE_LEADS)
 
@@ -19,22 +18,9 @@ def counts() -> np.ndarray:
     return np.random.default_rng(3).integers(-900, 900, (2000, 12)).astype(np.int16)
 
 
-def save(path: Path, *groups: Dataset) -> Path:
-    write_dicom(
-        path,
-        list(groups),
-        patient_id="P-7",
-        patient_name="Tester^Tess",
-        sex="F",
-        age_years=42,
-        recorded_at=datetime(2030, 5, 6, 7, 8, 9),
-    )
-    return path
-
-
 def test_samples_subject_and_time_are_read(tmp_path, counts):
     group = waveform_group(counts, LEADS, 500, step_uv=2.5)
-    recording = read_recording(save(tmp_path / "a.dcm", group))
+    recording = read_recording(write_object(tmp_path / "a.dcm", group))
     np.testing.assert_allclose(recording.signal_mv, counts * 0.0025, rtol=1e-12)
     assert recording.subject.id == "P-7"
     assert recording.subject.name == "Tester Tess"
@@ -43,7 +29,7 @@ def test_samples_subject_and_time_are_read(tmp_path, counts):
 
 
 def test_the_format_is_recognised_by_content(tmp_path, counts):
-    path = save(tmp_path / "no-ending", waveform_group(counts, LEADS, 500, step_uv=1))
+    path = write_object(tmp_path / "no-ending", waveform_group(counts, LEADS, 500, step_uv=1))
     assert read_recording(path).source.format == "DICOM"
 
 
@@ -54,7 +40,7 @@ def test_sensitivity_correction_baseline_and_unit_are_honoured(tmp_path, counts)
     channel.ChannelSensitivityCorrectionFactor = "1.25"
     channel.ChannelBaseline = "0.3"
     channel.ChannelSensitivityUnitsSequence = coded("mV", "UCUM", "millivolt")
-    recording = read_recording(save(tmp_path / "b.dcm", group))
+    recording = read_recording(write_object(tmp_path / "b.dcm", group))
     np.testing.assert_allclose(recording.signal_mv[:, 6], counts[:, 6] * 0.005 + 0.3, rtol=1e-12)
     np.testing.assert_allclose(recording.signal_mv[:, 7], counts[:, 7] / 1000, rtol=1e-12)
 
@@ -66,7 +52,7 @@ def test_samples_of_12_to_16_bits_keep_their_sign(tmp_path, counts, bits):
     group = waveform_group(empty_above.view(np.int16), LEADS, 500, step_uv=1)
     for channel in group.ChannelDefinitionSequence:
         channel.WaveformBitsStored = bits
-    recording = read_recording(save(tmp_path / "c.dcm", group))
+    recording = read_recording(write_object(tmp_path / "c.dcm", group))
     np.testing.assert_allclose(recording.signal_mv, counts / 1000, rtol=1e-12)
 
 
@@ -74,7 +60,7 @@ def test_a_lead_named_only_by_its_meaning_is_found(tmp_path, counts):
     group = waveform_group(counts, LEADS, 500, step_uv=1)
     for lead, channel in zip(LEADS, group.ChannelDefinitionSequence, strict=True):
         channel.ChannelSourceSequence = coded("X-1", "99LOCAL", f"Lead {lead} (surface)")
-    assert read_recording(save(tmp_path / "d.dcm", group)).leads_present == TWELVE_LEADS
+    assert read_recording(write_object(tmp_path / "d.dcm", group)).leads_present == TWELVE_LEADS
 
 
 @pytest.mark.parametrize(("style", "shift"), [("5.6.3-9-{}", 0), ("2:{}", 131072), ("2:{}", 0)])
@@ -84,7 +70,7 @@ def test_lead_codes_of_both_schemes(tmp_path, counts, style, shift):
     group = waveform_group(counts, LEADS, 500, step_uv=1)
     for number, channel in zip(numbers, group.ChannelDefinitionSequence, strict=True):
         channel.ChannelSourceSequence = coded(style.format(number + shift), "MDC", "unnamed")
-    recording = read_recording(save(tmp_path / "e.dcm", group))
+    recording = read_recording(write_object(tmp_path / "e.dcm", group))
     np.testing.assert_allclose(recording.signal_mv, counts / 1000, rtol=1e-12)
 
 
@@ -92,46 +78,46 @@ def test_the_rhythm_is_taken_and_never_a_derived_beat(tmp_path, counts):
     beat = waveform_group(counts[:600], LEADS, 500, step_uv=1)
     beat.WaveformOriginality = "DERIVED"
     rhythm = waveform_group(counts, LEADS, 500, step_uv=1)
-    recording = read_recording(save(tmp_path / "f.dcm", beat, rhythm))
+    recording = read_recording(write_object(tmp_path / "f.dcm", beat, rhythm))
     assert recording.n_samples == 2000
     with pytest.raises(RecordingError, match="only a derived beat"):
-        read_recording(save(tmp_path / "g.dcm", beat))
+        read_recording(write_object(tmp_path / "g.dcm", beat))
 
 
 def test_leads_spread_over_simultaneous_groups_are_joined(tmp_path, counts):
     limb = waveform_group(counts[:, :6], LEADS[:6], 500, step_uv=1)
     chest = waveform_group(counts[:, 6:], LEADS[6:], 500, step_uv=1)
-    recording = read_recording(save(tmp_path / "h.dcm", limb, chest))
+    recording = read_recording(write_object(tmp_path / "h.dcm", limb, chest))
     np.testing.assert_allclose(recording.signal_mv, counts / 1000, rtol=1e-12)
     chest.MultiplexGroupTimeOffset = "2500"
     with pytest.raises(RecordingError, match="recorded together"):
-        read_recording(save(tmp_path / "i.dcm", limb, chest))
+        read_recording(write_object(tmp_path / "i.dcm", limb, chest))
 
 
 def test_padding_becomes_a_gap(tmp_path, counts):
     counts[50:60, 2] = -32768
     group = waveform_group(counts, LEADS, 500, step_uv=1)
     group.add_new(0x5400100A, "SS", -32768)
-    recording = read_recording(save(tmp_path / "j.dcm", group))
+    recording = read_recording(write_object(tmp_path / "j.dcm", group))
     assert np.isnan(recording.signal_mv[50:60, 2]).all()
     assert np.isnan(recording.signal_mv).sum() == 10
 
 
 def test_what_is_no_ecg_waveform_is_refused(tmp_path, counts):
     with pytest.raises(RecordingError, match="holds no waveform"):
-        read_recording(save(tmp_path / "k.dcm"))
+        read_recording(write_object(tmp_path / "k.dcm"))
     group = waveform_group(counts, LEADS, 500, step_uv=1)
     channel = group.ChannelDefinitionSequence[0]
     channel.ChannelSensitivityUnitsSequence = coded("mm[Hg]", "UCUM", "pressure")
     with pytest.raises(RecordingError, match="no voltage"):
-        read_recording(save(tmp_path / "l.dcm", group))
+        read_recording(write_object(tmp_path / "l.dcm", group))
     del channel.ChannelSensitivityUnitsSequence
     with pytest.raises(RecordingError, match="without a unit"):
-        read_recording(save(tmp_path / "m.dcm", group))
+        read_recording(write_object(tmp_path / "m.dcm", group))
 
 
 def test_a_truncated_file_is_refused(tmp_path, counts):
-    path = save(tmp_path / "n.dcm", waveform_group(counts, LEADS, 500, step_uv=1))
+    path = write_object(tmp_path / "n.dcm", waveform_group(counts, LEADS, 500, step_uv=1))
     path.write_bytes(path.read_bytes()[:9000])
     with pytest.raises(RecordingError, match="Export it again"):
         read_recording(path)

@@ -12,7 +12,6 @@ import sys
 import tracemalloc
 import zlib
 from collections.abc import Callable
-from datetime import datetime
 from pathlib import Path
 
 import numpy as np
@@ -23,10 +22,11 @@ from pydicom.uid import DeflatedExplicitVRLittleEndian, ExplicitVRBigEndian
 from core import RecordingError, read_recording
 from core.recordings.leads import TWELVE_LEADS
 from core.recordings.scp import signals as scp_signals
-from sample_records.maker.dicom_file import coded, waveform_group, write_dicom
+from sample_records.maker.dicom_file import coded, waveform_group
 from tests.helpers import aecg_files as aecg
 from tests.helpers import scp_files as scp
 from tests.helpers.csv_files import RATE, in_mv, with_time
+from tests.helpers.dicom_files import write_object
 from tests.helpers.edf_files import counts, edf_bytes, signals
 from tests.helpers.watched import read_watched
 
@@ -224,18 +224,7 @@ def dicom(folder: Path, change: Callable[[Dataset], object], **said: object) -> 
     values = np.random.default_rng(3).integers(-100, 100, (120, 12)).astype(np.int16)
     group = waveform_group(values, LEADS, 500, step_uv=2.5)
     change(group)
-    path = folder / "bad.dcm"
-    write_dicom(
-        path,
-        [group],
-        patient_id="P-7",
-        patient_name="Tester^Tess",
-        sex="F",
-        age_years=42,
-        recorded_at=datetime(2030, 5, 6, 7, 8, 9),
-        **said,
-    )
-    return path
+    return write_object(folder / "bad.dcm", group, **said)
 
 
 def of_group(keyword: str, value: object) -> Callable[[Dataset], object]:
